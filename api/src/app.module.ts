@@ -1,0 +1,30 @@
+import { Module } from '@nestjs/common';
+import { APP_FILTER, APP_GUARD, APP_PIPE } from '@nestjs/core';
+import { AuthModule } from './auth/auth.module.ts';
+import { JwtGuard } from './auth/jwt.guard.ts';
+import { DatabaseModule } from './database/database.module.ts';
+import { CommonModule } from './common/common.module.ts';
+import { ConfigurationModule } from './common/configuration.module.ts';
+import { ProblemFilter } from './common/problem.filter.ts';
+import { RateLimitGuard } from './common/rate-limit.guard.ts';
+import { validationPipe } from './common/validation.pipe.ts';
+import { DemoModule } from './demo/demo.module.ts';
+import { FirmsModule } from './firms/firms.module.ts';
+import { HealthController } from './health/health.controller.ts';
+import { JobsModule } from './jobs/jobs.module.ts';
+import { NoticesModule } from './notices/notices.module.ts';
+import { PeopleModule } from './people/people.module.ts';
+import { QueueModule } from './queue/queue.module.ts';
+import { RecordModule } from './record/record.module.ts';
+
+@Module({
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, DemoModule],
+  controllers: [HealthController],
+  providers: [
+    { provide: APP_FILTER, useClass: ProblemFilter },
+    { provide: APP_PIPE, useFactory: validationPipe },
+    { provide: APP_GUARD, useClass: RateLimitGuard },
+    { provide: APP_GUARD, useClass: JwtGuard },
+  ],
+})
+export class AppModule {}

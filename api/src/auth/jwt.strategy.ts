@@ -1,0 +1,24 @@
+import { Inject, Injectable } from '@nestjs/common';
+import { PassportStrategy } from '@nestjs/passport';
+import { Strategy } from 'passport-jwt';
+import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
+import type { Actor } from '../common/unit-of-work.ts';
+import { SessionCookies } from './cookies.ts';
+
+interface AccessPayload {
+  sid: string;
+  sub: string;
+}
+
+/** Reads the access token from its cookie. It names session and person only; whether the session still lives is asked by every unit of work. */
+@Injectable()
+export class JwtStrategy extends PassportStrategy(Strategy) {
+  constructor(@Inject(CONFIGURATION) configuration: Configuration) {
+    const cookies = new SessionCookies(configuration.PUBLIC_URL);
+    super({ jwtFromRequest: (request) => cookies.access(request), secretOrKey: configuration.JWT_SECRET, algorithms: ['HS256'] });
+  }
+
+  validate(payload: AccessPayload): Actor {
+    return { sessionId: payload.sid, personId: payload.sub };
+  }
+}

@@ -1,0 +1,49 @@
+import type { Tx, UnitOfWork } from '../common/unit-of-work.ts';
+import { Problem } from '../common/problem.ts';
+import type { Mailer } from './mailer.ts';
+import { renderMail, type NoticeKind } from './templates.ts';
+
+interface NoticeRow {
+  id: string;
+  kind: NoticeKind;
+  person_id: string | null;
+  to_email: string | null;
+  to_name: string | null;
+  data: Record<string, unknown>;
+  firm_name: string;
+  sent_at: Date | null;
+}
+
+export interface NoticeJob {
+  noticeId: string;
+  firmId: string;
+}
+
+/** Worker: mails one notice of the outbox. It is marked as sent after the mail server took it; a crash in between may send it again, under the same Message-ID. */
+export async function sendNotice(work: UnitOfWork, mailer: Mailer, publicUrl: string, job: NoticeJob): Promise<void> {
+  const found = await work.writeAsFirm(job.firmId, (tx) => load(tx, job.noticeId));
+  if (!found || found.notice.sent_at !== null || !found.to) return;
+  const { notice, to } = found;
+  await mailer.send(renderMail(notice.kind, { ...notice.data, sender: notice.firm_name, name: notice.data['name'] ?? to.name, email: notice.data['email'] ?? to.address }), {
+    to,
+    senderName: notice.firm_name,
+    messageId: `<${notice.id}@${new URL(publicUrl).hostname}>`,
+    reason: notice.kind,
+    ...replyTo(notice.data),
+  });
+  await work.writeAsFirm(job.firmId, (tx) => tx.rows('update notice set sent_at = now() where id = $1 and sent_at is null', [job.noticeId]));
+}
+
+async function load(tx: Tx, noticeId: string) {
+  const notice = await tx.one<NoticeRow>('select n.*, f.name as firm_name from notice n join firm f on f.id = n.firm_id where n.id = $1', [noticeId]);
+  // the job may run before a read replica or a rolled-back act: an absent row is tried again by the queue
+  if (!notice) throw new Problem('not_found');
+  if (notice.to_email !== null) return { notice, to: { name: notice.to_name ?? '', address: notice.to_email } };
+  const person = await tx.one<{ email: string; name: string | null }>('select email, name from app.mail_address($1)', [notice.person_id]);
+  return { notice, to: person ? { name: person.name ?? '', address: person.email } : undefined };
+}
+
+function replyTo(data: Record<string, unknown>): { replyTo?: { name: string; address: string } } {
+  const { replyToName, replyToEmail } = data;
+  return typeof replyToEmail === 'string' ? { replyTo: { name: typeof replyToName === 'string' ? replyToName : '', address: replyToEmail } } : {};
+}

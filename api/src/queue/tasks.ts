@@ -1,0 +1,25 @@
+import type { INestApplicationContext } from '@nestjs/common';
+import type { TaskList } from 'graphile-worker';
+import { z } from 'zod';
+import { sendCode } from '../auth/send-code.repository.ts';
+import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
+import { UnitOfWork } from '../common/unit-of-work.ts';
+import type { Mailer } from '../notices/mailer.ts';
+import { sendNotice } from '../notices/send-notice.repository.ts';
+
+const CodeJob = z.object({ codeId: z.uuid() });
+const NoticeJob = z.object({ noticeId: z.uuid(), firmId: z.uuid() });
+
+/** Every kind of work that the worker knows. Each may run twice and must then do nothing more. */
+export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
+  const work = app.get(UnitOfWork);
+  const configuration = app.get<Configuration>(CONFIGURATION);
+  const settings = { secret: configuration.CODE_SECRET, publicUrl: configuration.PUBLIC_URL };
+  return {
+    send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
+    send_notice: (payload) => sendNotice(work, mailer, configuration.PUBLIC_URL, NoticeJob.parse(payload)),
+    sweep_old: async () => {
+      await work.write(undefined, (tx) => tx.rows('select app.sweep(now())'));
+    },
+  };
+}

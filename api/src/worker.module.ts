@@ -1,0 +1,24 @@
+import { Module } from '@nestjs/common';
+import { SequelizeModule } from '@nestjs/sequelize';
+import { CommonModule } from './common/common.module.ts';
+import { CONFIGURATION, type Configuration } from './common/configuration.ts';
+import { ConfigurationModule } from './common/configuration.module.ts';
+import { connectionOptions } from './database/connection.ts';
+import { models } from './database/models.ts';
+import { NoticesModule } from './notices/notices.module.ts';
+import { QueueModule } from './queue/queue.module.ts';
+import { RecordModule } from './record/record.module.ts';
+
+const workerConnection = (name?: string) =>
+  SequelizeModule.forRootAsync({
+    ...(name ? { name } : {}),
+    inject: [CONFIGURATION],
+    useFactory: (configuration: Configuration) => ({
+      ...(name ? { name } : { models }),
+      ...connectionOptions(configuration.DATABASE_WORKER_URL, configuration.DATABASE_POOL),
+    }),
+  });
+
+/** The same parts as the web process, on the worker's own role. */
+@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, NoticesModule] })
+export class WorkerModule {}

@@ -1,0 +1,46 @@
+import 'reflect-metadata';
+import { NestFactory } from '@nestjs/core';
+import { Logger as QueueLogger, run } from 'graphile-worker';
+import { readConfiguration } from './common/configuration.ts';
+import { leaveWithParent } from './common/leave-with-parent.ts';
+import { PinoLogger, rootLogger } from './common/logging.ts';
+import { startOrExplain } from './common/start-or-explain.ts';
+import { Mailer } from './notices/mailer.ts';
+import { DeadWorkerSweep } from './queue/sweep.ts';
+import { tasks } from './queue/tasks.ts';
+import { WorkerModule } from './worker.module.ts';
+
+await startOrExplain(async () => {
+  const configuration = readConfiguration(process.env);
+  const logger = rootLogger(configuration.LOG_LEVEL);
+  const app = await NestFactory.createApplicationContext(WorkerModule, { logger: new PinoLogger(logger), abortOnError: false });
+  const mailer = new Mailer(configuration.SMTP_URL, configuration.MAIL_FROM);
+  const sweep = await DeadWorkerSweep.connect(configuration.QUEUE_URL);
+  const runner = await run({
+    connectionString: configuration.QUEUE_URL,
+    concurrency: 4,
+    pollInterval: 1_000,
+    noHandleSignals: true,
+    // old limits and answered keys go once a day
+    crontab: '20 3 * * * sweep_old',
+    events: sweep.events,
+    taskList: tasks(app, mailer),
+    logger: new QueueLogger(() => (level, message, meta) => {
+      if (level === 'error') logger.error({ meta: { job: (meta as { job?: { id?: string } } | undefined)?.job?.id } }, message);
+      else logger.debug(message);
+    }),
+  });
+  await sweep.start((error) => logger.error({ err: error }, 'sweep'));
+  let leaving = false;
+  const leave = async () => {
+    if (leaving) return;
+    leaving = true;
+    await runner.stop();
+    await sweep.close();
+    mailer.close();
+    await app.close();
+  };
+  for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, () => void leave().finally(() => process.exit(0)));
+  leaveWithParent(leave);
+  process.send?.('ready');
+});

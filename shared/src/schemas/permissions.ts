@@ -1,0 +1,45 @@
+import type { Role } from './roles.ts';
+
+const firm = ['principal', 'manager', 'site', 'books'] as const;
+const office = ['principal', 'manager', 'books'] as const;
+
+/**
+ * Who may do what, by role; the state of the record is checked by the act itself. Refused by default: what isn't listed can't be done.
+ * The portal reads the same table to offer only what will be allowed.
+ */
+export const permissions = {
+  'firm.read': firm,
+  'job.create': ['principal', 'manager'],
+  'job.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
+  'people.read': [...firm, 'homeowner', 'lender'],
+  'people.invite': ['principal', 'manager'],
+  'record.read': [...office, 'homeowner', 'lender'],
+  'money.read': [...office, 'homeowner', 'lender'],
+  'schedule_of_values.import': ['principal', 'manager', 'books'],
+  'schedule_of_values.read': [...office, 'homeowner', 'lender'],
+  'milestone.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
+  'milestone.plan': ['principal', 'manager'],
+  'milestone.claim': ['principal', 'manager', 'site'],
+  'milestone.prove': ['homeowner', 'lender', 'inspector'],
+  'photo.add': ['principal', 'manager', 'site', 'inspector', 'lender'],
+  'photo.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
+  'change.read': [...firm, 'homeowner', 'lender', 'designer'],
+  'change.price': ['principal', 'manager'],
+  'change.issue': ['principal', 'manager'],
+  'change.review': ['principal', 'manager', 'designer'],
+  'change.decide': ['homeowner'],
+  'draw.read': [...office, 'homeowner', 'lender'],
+  'draw.prepare': ['principal', 'manager', 'books'],
+  'draw.approve': ['homeowner'],
+  'draw.fund': ['lender'],
+  'payment.start': ['homeowner'],
+  'payment.record': ['principal', 'books'],
+  'payout.setup': ['principal'],
+  'loan.terms': ['principal', 'manager', 'lender'],
+} as const satisfies Record<string, readonly Role[]>;
+
+export type Permission = keyof typeof permissions;
+
+/** Whether somebody with these roles may do this, before the record's state is asked. */
+export const may = (roles: readonly Role[], permission: Permission): boolean =>
+  roles.some((role) => (permissions[permission] as readonly Role[]).includes(role));
