@@ -85,19 +85,20 @@ export async function startPostgres({ dir, durable = true, port: wanted, bin: wa
   if (cluster.base !== path.resolve(dir)) say(`${path.resolve(dir)} is closed to user postgres; the database lives in ${cluster.base}`);
   const me = identity(process.pid) ?? String(process.pid);
   cluster.claimFolder();
-  const { port, reused, passwords } = await withLock(cluster.lock, async () => {
-    const secrets = cluster.prepare();
+  const { connection, reused } = await withLock(cluster.lock, async () => {
+    const passwords = cluster.prepare();
     cluster.hold(me);
     const running = await cluster.answering();
-    return { port: running ?? (await cluster.start(wanted)), reused: running !== undefined, passwords: secrets };
+    const server = connect({ bin, port: running ?? (await cluster.start(wanted)), passwords });
+    server.makeRoles(); // under the lock: two at once would disturb each other
+    return { connection: server, reused: running !== undefined };
   });
   // detached: a Ctrl-C in the terminal reaches this process, which then stops the server in its own order
   const guardian = fork(path.join(here, 'lib/guardian.mjs'), [bin, cluster.base, String(durable), me], { detached: true, stdio: ['ignore', 'ignore', 'ignore', 'ipc'] });
   guardian.unref();
   guardian.channel?.unref();
 
-  const connection = connect({ bin, port, passwords });
-  connection.makeRoles();
+  const { port } = connection;
   return {
     ...connection,
     reused,

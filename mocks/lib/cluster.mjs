@@ -86,7 +86,7 @@ export class Cluster {
   async answering() {
     for (let tries = 0; tries < 300; tries += 1) {
       const server = this.postmaster();
-      if (!server || !this.#isPostmaster(server.pid)) return undefined;
+      if (!server || !this.isPostmaster(server.pid)) return undefined;
       if (server.port && this.#ready(server.port)) return server.port;
       await pause(100);
     }
@@ -98,7 +98,7 @@ export class Cluster {
    * so it must be a living process whose working folder is the data folder.
    * @param {number} pid
    */
-  #isPostmaster(pid) {
+  isPostmaster(pid) {
     try {
       return statSync(`/proc/${pid}/cwd/postmaster.pid`).ino === statSync(path.join(this.data, 'postmaster.pid')).ino;
     } catch {

@@ -54,7 +54,7 @@ export async function withLock(file, work) {
         lock.release();
       }
     }
-    if (tries > 1200) throw new Error(`process ${lock.holder} holds ${file} for more than two minutes`);
+    if (tries > 9000) throw new Error(`process ${Number.parseInt(lock.holder, 10)} holds ${file} for more than fifteen minutes`);
     await pause(100);
   }
 }
