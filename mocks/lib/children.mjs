@@ -30,7 +30,7 @@ export function startNode(args, { cwd = root, env = {}, output = 'inherit' } = {
  * @returns {Promise<{ code: number | string, output: string, errors: string }>} code: exit status, or the signal's name
  */
 export function runNode(args, { cwd, env, timeout, onStart } = {}) {
-  return finish(startNode(args, { cwd, env, output: 'pipe' }), timeout, onStart);
+  return finish(startNode(args, { cwd, env: { NO_COLOR: '1', ...env }, output: 'pipe' }), timeout, onStart);
 }
 
 /**

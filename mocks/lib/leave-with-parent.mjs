@@ -6,4 +6,5 @@ if (process.env['LEAVE_WITH'] === String(process.ppid)) {
     setTimeout(() => process.exit(1), 8000).unref();
     process.kill(process.pid, 'SIGTERM');
   });
+  process.channel?.unref(); // listening must not keep a program alive that is done
 }
