@@ -2,7 +2,7 @@ import path from 'node:path';
 import { Failure } from './failure.mjs';
 
 /** Where Stripe, or its stand-in, sends events. */
-const webhookPath = '/api/webhooks/stripe';
+const webhookPath = '/api/payments/webhook';
 
 /**
  * Starts the local stand-ins for what .env points at nothing real.
