@@ -1,5 +1,5 @@
 import { SetMetadata, applyDecorators, createParamDecorator, type ExecutionContext } from '@nestjs/common';
-import { ApiHeader } from '@nestjs/swagger';
+import { ApiExtension, ApiHeader } from '@nestjs/swagger';
 import type { Request } from 'express';
 import { z } from 'zod';
 import type { Permission } from '@tallypole/shared/schemas/permissions';
@@ -15,7 +15,8 @@ export const ACCESS = 'route:access';
 export const RATE = 'route:rate';
 
 /** Declares who may use a route and how often. Every route needs it; a test looks. */
-export const Route = (access: RouteAccess, rate: RateClass) => applyDecorators(SetMetadata(ACCESS, access), SetMetadata(RATE, rate));
+export const Route = (access: RouteAccess, rate: RateClass) =>
+  applyDecorators(SetMetadata(ACCESS, access), SetMetadata(RATE, rate), ApiExtension('x-access', access), ApiExtension('x-rate', rate));
 
 /** Who acts, put on the request by the JWT strategy. */
 export const CurrentActor = createParamDecorator((_: unknown, context: ExecutionContext): Actor => {

@@ -98,6 +98,12 @@ export class House {
     }
   }
 
+  /** Runs SQL as the owner of the queue's schema. */
+  async asQueueOwner(text: string): Promise<void> {
+    const client = await connected(this.server.url('queue_owner', this.database));
+    await client.query(text).finally(() => client.end());
+  }
+
   async kill(child: ChildProcess, signal: NodeJS.Signals = 'SIGKILL'): Promise<void> {
     if (child.exitCode !== null || child.signalCode !== null) return;
     const gone = new Promise((done) => child.once('exit', done));
