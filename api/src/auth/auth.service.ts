@@ -17,6 +17,12 @@ const CODE_MINUTES = 10;
 /** Codes that one address may ask for. */
 const CODES_PER_ADDRESS = { hits: 6, seconds: 900 };
 
+export interface SignedIn {
+  actor: Actor;
+  me: Me;
+  tokens: SessionTokens;
+}
+
 @Injectable()
 export class AuthService {
   constructor(
@@ -43,7 +49,7 @@ export class AuthService {
     return await this.askForCode(email);
   }
 
-  async signIn(input: SignIn, userAgent: string): Promise<{ me: Me; tokens: SessionTokens }> {
+  async signIn(input: SignIn, userAgent: string): Promise<SignedIn> {
     const now = this.clock.now();
     const refresh = newRefreshToken();
     const sessionId = v7();
@@ -53,7 +59,7 @@ export class AuthService {
     if (personId === null) throw new Problem(outcome === 'wrong' ? 'wrong_code' : 'code_expired');
     const actor = { sessionId, personId };
     await this.acceptance.acceptAll(actor);
-    return { me: await this.me(actor), tokens: { access: this.accessToken(actor), refresh } };
+    return { actor, me: await this.me(actor), tokens: { access: this.accessToken(actor), refresh } };
   }
 
   async provePresence(actor: Actor, code: string): Promise<void> {

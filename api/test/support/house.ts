@@ -29,7 +29,7 @@ export class House {
   private readonly server = connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]);
   private readonly folder = mkdtempSync(path.join(tmpdir(), 'tally-test-'));
   private readonly children: ChildProcess[] = [];
-  private owner: pg.Client | undefined;
+  private owner: Promise<pg.Client> | undefined;
 
   private constructor() {
     made += 1;
@@ -84,8 +84,8 @@ export class House {
 
   /** Runs SQL as the owner, who sees everything. */
   async sql<T extends pg.QueryResultRow>(text: string, values: unknown[] = []): Promise<T[]> {
-    this.owner ??= await connected(this.server.url('tally_owner', this.database));
-    return (await this.owner.query<T>(text, values)).rows;
+    this.owner ??= connected(this.server.url('tally_owner', this.database));
+    return (await (await this.owner).query<T>(text, values)).rows;
   }
 
   /** Runs a statement as one of the runtime roles on a connection of its own. */
@@ -114,7 +114,7 @@ export class House {
   async close(): Promise<void> {
     await Promise.all(this.children.map((child) => this.kill(child)));
     await this.mail.stop();
-    await this.owner?.end();
+    await (await this.owner)?.end();
     this.server.dropDatabase(this.database);
     rmSync(this.folder, { recursive: true, force: true });
   }

@@ -129,9 +129,13 @@ create function app.my_invitations(p_now timestamptz) returns table (id uuid, ro
       and i.accepted_at is null and i.revoked_at is null and i.expires_at > p_now
 $$;
 
-revoke all on function app.ask_for_code, app.set_code, app.code_address, app.try_code, app.sign_in, app.prove_presence, app.refresh_session, app.start_firm,
+create function app.is_empty() returns boolean language sql stable security definer set search_path = public, pg_temp as $$
+  select not exists (select 1 from firm)
+$$;
+
+revoke all on function app.is_empty, app.ask_for_code, app.set_code, app.code_address, app.try_code, app.sign_in, app.prove_presence, app.refresh_session, app.start_firm,
   app.accept_invitations, app.my_invitations from public;
 grant execute on function app.ask_for_code, app.sign_in, app.prove_presence, app.refresh_session, app.start_firm, app.accept_invitations to app_write;
 grant execute on function app.my_invitations to app_read, app_write;
-grant execute on function app.set_code, app.code_address to app_worker;
+grant execute on function app.is_empty, app.set_code, app.code_address to app_worker;
 `;
