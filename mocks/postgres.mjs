@@ -10,6 +10,7 @@ import { withLock } from './lib/lock.mjs';
 import { identity, pause } from './lib/processes.mjs';
 
 const here = path.dirname(fileURLToPath(import.meta.url));
+let started = 0;
 const rolesFile = path.join(here, '../api/src/database/roles.sql');
 
 /**
@@ -83,8 +84,13 @@ export async function startPostgres({ dir, durable = true, port: wanted, bin: wa
   const bin = requirePostgres(wantedBin, say);
   const cluster = new Cluster(bin, clusterFolder(dir), durable);
   if (cluster.base !== path.resolve(dir)) say(`${path.resolve(dir)} is closed to user postgres; the database lives in ${cluster.base}`);
-  const me = identity(process.pid) ?? String(process.pid);
+  started += 1;
+  const me = `${identity(process.pid)}.${started}`;
   cluster.claimFolder();
+  // detached: a Ctrl-C in the terminal reaches this process, which then stops the server in its own order
+  const guardian = fork(path.join(here, 'lib/guardian.mjs'), [bin, cluster.base, String(durable), me], { detached: true, stdio: ['ignore', 'ignore', 'ignore', 'ipc'] });
+  guardian.unref();
+  guardian.channel?.unref();
   const { connection, reused } = await withLock(cluster.lock, async () => {
     const passwords = cluster.prepare();
     cluster.hold(me);
@@ -93,11 +99,6 @@ export async function startPostgres({ dir, durable = true, port: wanted, bin: wa
     server.makeRoles(); // under the lock: two at once would disturb each other
     return { connection: server, reused: running !== undefined };
   });
-  // detached: a Ctrl-C in the terminal reaches this process, which then stops the server in its own order
-  const guardian = fork(path.join(here, 'lib/guardian.mjs'), [bin, cluster.base, String(durable), me], { detached: true, stdio: ['ignore', 'ignore', 'ignore', 'ipc'] });
-  guardian.unref();
-  guardian.channel?.unref();
-
   const { port } = connection;
   return {
     ...connection,

@@ -3,10 +3,10 @@ import { existsSync, readdirSync, rmSync } from 'node:fs';
 import path from 'node:path';
 import { createInterface } from 'node:readline/promises';
 import { root } from './lib/children.mjs';
-import { Cluster, clusterFolder } from './lib/cluster.mjs';
+import { Cluster, clusterFolder, holderLives } from './lib/cluster.mjs';
 import { explain, Failure } from './lib/failure.mjs';
 import { refuseWhileRunning } from './lib/house.mjs';
-import { lives, pause } from './lib/processes.mjs';
+import { pause } from './lib/processes.mjs';
 
 const data = path.join(root, '.data');
 
@@ -36,7 +36,7 @@ try {
 async function refuseWhileServing(folder) {
   const cluster = new Cluster('', folder, true);
   for (let tries = 0; cluster.postmaster() && tries < 50; tries += 1) {
-    if (existsSync(cluster.holders) && readdirSync(cluster.holders).some(lives)) break;
+    if (existsSync(cluster.holders) && readdirSync(cluster.holders).some(holderLives)) break;
     await pause(100);
   }
   const server = cluster.postmaster();

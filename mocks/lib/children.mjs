@@ -17,7 +17,7 @@ export const cleanEnv = Object.fromEntries(Object.entries(process.env).filter(([
 export function startNode(args, { cwd = root, env = {}, output = 'inherit' } = {}) {
   return spawn(process.execPath, ['--import', leave, ...args], {
     cwd,
-    env: { ...cleanEnv, ...env, LEAVE_WITH: String(process.pid) },
+    env: { ...cleanEnv, ...env, LEAVE_WITH_PARENT: 'yes' },
     detached: true,
     stdio: ['ignore', output, output, 'ipc'],
   });

@@ -153,7 +153,7 @@ export class Cluster {
     this.asOwner('pg_ctl', ['stop', '-m', mode, '-w', '-s', '-t', '60', '-D', this.data], { stdio: 'ignore' });
   }
 
-  /** Names this process as one that needs the server. @param {string} id as `identity` gives it */
+  /** Names one that needs the server. @param {string} id as `identity` gives it, with a number of its own behind a dot */
   hold(id) {
     writeFileSync(path.join(this.holders, id), '');
   }
@@ -162,8 +162,8 @@ export class Cluster {
   letGo(id) {
     rmSync(path.join(this.holders, id), { force: true });
     const others = existsSync(this.holders) ? readdirSync(this.holders) : [];
-    for (const gone of others.filter((other) => !lives(other))) rmSync(path.join(this.holders, gone), { force: true });
-    return !others.some(lives);
+    for (const gone of others.filter((other) => !holderLives(other))) rmSync(path.join(this.holders, gone), { force: true });
+    return !others.some(holderLives);
   }
 
   /**
@@ -208,6 +208,9 @@ export function clusterFolder(dir) {
   if (runAsOwner('/usr/bin/test', ['-x', parent]).status === 0) return wanted;
   return `/var/lib/postgresql/tallypole-${createHash('sha256').update(wanted).digest('hex').slice(0, 12)}`;
 }
+
+/** @param {string} id as `hold` got it */
+export const holderLives = (id) => lives(id.split('.')[0] ?? '');
 
 /** @param {unknown} text */
 const lastLine = (text) => String(text ?? '').trim().split('\n').at(-1) ?? '';
