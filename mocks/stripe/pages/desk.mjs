@@ -1,0 +1,54 @@
+import { dollars, html, moment } from './html.mjs';
+import { sendPage, sendProblem } from './layout.mjs';
+
+/**
+ * @typedef {import('../types.d.ts').World} World
+ * @typedef {import('node:http').ServerResponse} ServerResponse
+ */
+
+const most = 50;
+
+/**
+ * GET /: the accounts and the newest payments, each with its page.
+ * @param {World} world
+ * @param {ServerResponse} response
+ */
+export function showDesk(world, response) {
+  const { accounts, sessions, stuck } = world.store.transaction((tx) => ({
+    accounts: tx.all('account').map((r) => r.value),
+    sessions: tx.all('checkout.session').reverse().slice(0, most).map(({ account, value }) => ({
+      session: value,
+      name: tx.find('account', account)?.business_profile?.name ?? account,
+      intent: typeof value.payment_intent === 'string' ? tx.find('payment_intent', value.payment_intent) : undefined,
+    })),
+    stuck: tx.all('delivery').filter(({ value: d }) => d.state === 'waiting' && d.attempts.length > 0).length,
+  }));
+  sendPage(response, 200, {
+    title: 'All payments of the stand-in',
+    body: html`
+<h1>All payments of the stand-in</h1>
+${stuck > 0 && html`<div class="problem"><strong>${stuck} webhook ${stuck === 1 ? 'delivery was' : 'deliveries were'} refused</strong><p>They are sent again until they are accepted.</p></div>`}
+<h2>Payments</h2>
+${sessions.length === 0 ? html`<p class="soft">Nothing has been paid yet. A payment appears here when a checkout session is made.</p>` : html`<ul class="list">${sessions.map(({ session, name, intent }) => html`<li><a href="/pay/${session.id}">${dollars(session.amount_total)} to ${name}</a><span class="hint">${(intent?.status ?? session.status ?? '').replaceAll('_', ' ')}, ${moment(session.created)}</span></li>`)}</ul>`}
+<h2>Accounts</h2>
+${accounts.length === 0 ? html`<p class="soft">No account is connected yet.</p>` : html`<ul class="list">${accounts.map((a) => html`<li>${a.business_profile?.name ?? a.email ?? ''} <span class="hint">${a.id}, ${a.charges_enabled ? 'can take payments' : 'can\'t take payments yet'}</span></li>`)}</ul>`}`,
+  });
+}
+
+/**
+ * GET /receipt/:charge
+ * @param {World} world
+ * @param {ServerResponse} response
+ * @param {string} id
+ */
+export function showReceipt(world, response, id) {
+  const charge = world.store.transaction((tx) => tx.find('charge', id));
+  if (charge?.status !== 'succeeded') return sendProblem(response, 404, 'There is no such receipt.');
+  const method = charge.payment_method_details?.type === 'card' ? 'Card' : 'Bank debit';
+  sendPage(response, 200, {
+    title: `Receipt for ${dollars(charge.amount)}`,
+    body: html`<h1>Receipt</h1><p class="sum">${dollars(charge.amount)}</p>
+<dl><dt>Paid</dt><dd>${moment(charge.created)}</dd><dt>With</dt><dd>${method}</dd><dt>For</dt><dd>${charge.description ?? 'no description'}</dd>
+<dt>Charge</dt><dd>${charge.id}</dd>${charge.amount_refunded > 0 && html`<dt>Refunded</dt><dd>${dollars(charge.amount_refunded)}</dd>`}</dl>`,
+  });
+}

@@ -1,0 +1,221 @@
+import { invalid, missing, refused } from '../errors.mjs';
+import { listPage, within } from '../lists.mjs';
+import { newLineItem, newSession } from '../objects/session.mjs';
+import { address, email, hash, integer, listOf, metadata, oneOf, paging, range, readParams, required, text } from '../params.mjs';
+import { expire } from '../payments/checkout.mjs';
+import { schedule } from '../plans.mjs';
+import { merged } from './merge.mjs';
+
+/**
+ * @typedef {import('../router.mjs').Call} Call
+ * @typedef {import('stripe').Stripe.Checkout.Session} Session
+ */
+
+const smallest = 50; // cents: Stripe's minimum charge in US dollars (from memory)
+const largest = 99_999_999; // eight digits (from memory)
+const soonest = 30 * 60;
+const latest = 24 * 60 * 60;
+
+const item = hash({
+  price_data: required(
+    hash({
+      currency: required(text(3)),
+      unit_amount: required(integer(0, largest)),
+      tax_behavior: oneOf('exclusive', 'inclusive', 'unspecified'),
+      product_data: required(hash({ name: required(text(5000)), description: text(), metadata: metadata() })),
+    }),
+  ),
+  quantity: required(integer(1, 999_999)),
+});
+
+const intentData = hash({
+  application_fee_amount: integer(0, largest),
+  capture_method: oneOf('automatic', 'automatic_async'),
+  description: text(1000),
+  metadata: metadata(),
+  receipt_email: email(),
+  statement_descriptor: text(22),
+  statement_descriptor_suffix: text(22),
+  transfer_group: text(),
+});
+
+const options = hash({
+  us_bank_account: hash({
+    financial_connections: hash({
+      permissions: listOf(oneOf('balances', 'ownership', 'payment_method', 'transactions')),
+      prefetch: listOf(oneOf('balances', 'ownership', 'transactions')),
+    }),
+    verification_method: oneOf('automatic', 'instant'),
+  }),
+  card: hash({ request_three_d_secure: oneOf('any', 'automatic', 'challenge') }),
+});
+
+const createParams = {
+  mode: required(oneOf('payment')),
+  line_items: required(listOf(item)),
+  payment_method_types: listOf(oneOf('card', 'us_bank_account')),
+  payment_method_options: options,
+  payment_intent_data: intentData,
+  success_url: required(address()),
+  cancel_url: address(),
+  client_reference_id: text(200),
+  customer_email: email(),
+  customer_creation: oneOf('always', 'if_required'),
+  billing_address_collection: oneOf('auto', 'required'),
+  custom_text: hash({ submit: hash({ message: required(text(1200)) }) }),
+  expires_at: integer(0),
+  locale: text(10),
+  metadata: metadata(),
+  submit_type: oneOf('auto', 'book', 'donate', 'pay'),
+  ui_mode: oneOf('hosted_page'),
+};
+
+/** @param {Call} call */
+export function createSession({ act, form }) {
+  const asked = readParams(createParams, form);
+  const currency = (asked.line_items[0]?.price_data.currency ?? 'usd').toLowerCase();
+  const types = asked.payment_method_types ?? ['card', 'us_bank_account'];
+  const items = asked.line_items.map(({ price_data: p, quantity }) =>
+    newLineItem(act, { name: p.product_data.name, currency: p.currency.toLowerCase(), unit: p.unit_amount, quantity, tax_behavior: p.tax_behavior ?? null }),
+  );
+  const amount = items.reduce((sum, i) => sum + i.amount_total, 0);
+  const fee = asked.payment_intent_data?.application_fee_amount ?? null;
+  check(act, { items, currency, types, amount, fee, expires: asked.expires_at });
+  const session = act.tx.put(
+    'checkout.session',
+    act.account,
+    newSession(act, {
+      amount,
+      currency,
+      types,
+      success_url: asked.success_url,
+      cancel_url: asked.cancel_url ?? null,
+      client_reference_id: asked.client_reference_id ?? null,
+      customer_email: asked.customer_email ?? null,
+      expires_at: asked.expires_at ?? act.now + latest,
+      locale: asked.locale ?? null,
+      metadata: asked.metadata ?? {},
+      submit_type: asked.submit_type ?? null,
+      options: shownOptions(types, asked.payment_method_options),
+      customer_creation: asked.customer_creation ?? 'if_required',
+      billing: asked.billing_address_collection ?? null,
+      submitText: asked.custom_text?.submit?.message ?? null,
+    }),
+  );
+  const data = asked.payment_intent_data;
+  act.tx.put('session_detail', act.account, {
+    id: session.id,
+    line_items: items,
+    intent: {
+      application_fee_amount: fee,
+      description: data?.description ?? null,
+      metadata: data?.metadata ?? {},
+      receipt_email: data?.receipt_email ?? null,
+      statement_descriptor: data?.statement_descriptor ?? null,
+      statement_descriptor_suffix: data?.statement_descriptor_suffix ?? null,
+      transfer_group: data?.transfer_group ?? null,
+    },
+  });
+  schedule(act, { id: session.id, step: 'expire', after: session.expires_at * 1000 - act.world.nowMs() });
+  return session;
+}
+
+/**
+ * What can only be judged from the whole.
+ * @param {import('../types.d.ts').Act} act
+ * @param {{ items: import('stripe').Stripe.LineItem[], currency: string, types: string[], amount: number, fee: number | null, expires: number | undefined }} asked
+ */
+function check(act, { items, currency, types, amount, fee, expires }) {
+  if (items.length === 0) throw invalid('Missing required param: line_items.', { code: 'parameter_missing', param: 'line_items' });
+  if (types.length === 0) throw invalid('Missing required param: payment_method_types.', { code: 'parameter_missing', param: 'payment_method_types' });
+  if (items.some((i) => i.currency !== currency)) throw invalid('All line items must have the same currency.', { param: 'line_items' });
+  if (currency !== 'usd') throw invalid(`Invalid currency: ${currency}. This account takes US dollars only.`, { param: 'line_items[0][price_data][currency]' });
+  if (amount < smallest) {
+    throw invalid("The Checkout Session's total amount due must add up to at least $0.50 usd", { code: 'amount_too_small', param: 'line_items' });
+  }
+  if (amount > largest) {
+    throw invalid("The Checkout Session's total amount due must be no more than $999,999.99 usd", { code: 'amount_too_large', param: 'line_items' });
+  }
+  if (fee !== null && fee > amount) {
+    throw invalid('Your application fee cannot exceed the amount of the payment.', { param: 'payment_intent_data[application_fee_amount]' });
+  }
+  if (fee !== null && act.account === act.world.platform) {
+    throw invalid('Can only apply an application_fee_amount when the PaymentIntent is attempting a direct payment or a destination payment.', {
+      param: 'payment_intent_data[application_fee_amount]',
+    });
+  }
+  if (expires !== undefined && expires < act.now + soonest) {
+    throw invalid('The `expires_at` timestamp must be at least 30 minutes from Checkout Session creation.', { param: 'expires_at' });
+  }
+  if (expires !== undefined && expires > act.now + latest + 60) {
+    throw invalid('The `expires_at` timestamp must be less than 24 hours from Checkout Session creation.', { param: 'expires_at' });
+  }
+  const account = act.tx.find('account', act.account);
+  if (account && !account.charges_enabled) throw refused('Your account cannot currently make charges.', { code: 'account_invalid' });
+}
+
+/**
+ * @param {string[]} types
+ * @param {{ us_bank_account?: { verification_method?: string | undefined } | undefined } | undefined} asked
+ * @returns {Session['payment_method_options']}
+ */
+const shownOptions = (types, asked) => ({
+  ...(types.includes('card') ? { card: { request_three_d_secure: /** @type {const} */ ('automatic') } } : {}),
+  ...(types.includes('us_bank_account')
+    ? { us_bank_account: { verification_method: asked?.us_bank_account?.verification_method === 'instant' ? 'instant' : 'automatic' } }
+    : {}),
+});
+
+/** @param {Call} call */
+export function retrieveSession({ act, params, form }) {
+  readParams({}, form);
+  return known(act, params['id'] ?? '');
+}
+
+/** @param {Call} call */
+export function listSessions({ act, form, path }) {
+  const { payment_intent, status, created, customer_details, ...page } = readParams(
+    {
+      ...paging,
+      created: range(),
+      payment_intent: text(255),
+      status: oneOf('complete', 'expired', 'open'),
+      customer_details: hash({ email: required(email()) }),
+    },
+    form,
+  );
+  return listPage(act, 'checkout.session', path, page, (s) => {
+    const mail = customer_details === undefined || s.customer_details?.email?.toLowerCase() === customer_details.email.toLowerCase();
+    return mail && within(created, s.created) && (payment_intent === undefined || s.payment_intent === payment_intent) && (status === undefined || s.status === status);
+  });
+}
+
+/** @param {Call} call */
+export function updateSession({ act, params, form }) {
+  const asked = readParams({ metadata: metadata() }, form);
+  const session = known(act, params['id'] ?? '');
+  return asked.metadata ? act.tx.change('checkout.session', session.id, { metadata: merged(session.metadata, asked.metadata) }) : session;
+}
+
+/** @param {Call} call */
+export function expireSession({ act, params, form }) {
+  readParams({}, form);
+  return expire(act, known(act, params['id'] ?? '').id);
+}
+
+/** @param {Call} call */
+export function listLineItems({ act, params, form, path }) {
+  readParams(paging, form);
+  const session = known(act, params['id'] ?? '');
+  return { object: 'list', data: act.tx.find('session_detail', session.id)?.line_items ?? [], has_more: false, url: path };
+}
+
+/**
+ * @param {import('../types.d.ts').Act} act
+ * @param {string} id
+ */
+function known(act, id) {
+  const session = act.tx.find('checkout.session', id, act.account);
+  if (!session) throw missing('checkout.session', id, 'session');
+  return session;
+}
