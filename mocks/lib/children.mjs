@@ -12,14 +12,15 @@ export const cleanEnv = Object.fromEntries(Object.entries(process.env).filter(([
  * Starts a Node program that leaves when this process is gone, however it went. It has its own process group, so a Ctrl-C
  * in the terminal reaches this process alone.
  * @param {string[]} args of node
- * @param {{ cwd?: string, env?: Record<string, string | undefined>, output?: 'inherit' | 'pipe' | 'ignore' }} [options]
+ * @param {{ cwd?: string, env?: Record<string, string | undefined>, output?: 'inherit' | 'errors' | 'pipe' | 'ignore' }} [options] output:
+ *   where what it says goes; `errors` passes on only those
  */
 export function startNode(args, { cwd = root, env = {}, output = 'inherit' } = {}) {
   return spawn(process.execPath, ['--import', leave, ...args], {
     cwd,
     env: { ...cleanEnv, ...env, LEAVE_WITH_PARENT: 'yes' },
     detached: true,
-    stdio: ['ignore', output, output, 'ipc'],
+    stdio: ['ignore', output === 'errors' ? 'ignore' : output, output === 'errors' ? 'inherit' : output, 'ipc'],
   });
 }
 

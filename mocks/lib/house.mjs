@@ -55,7 +55,7 @@ export class House {
    * Starts a process that has to stay. Its end stops the whole house, unless `mayEnd`.
    * @param {string} name
    * @param {string[]} args of node
-   * @param {{ cwd?: string, env?: Record<string, string | undefined>, mayEnd?: boolean }} [options]
+   * @param {{ cwd?: string, env?: Record<string, string | undefined>, output?: 'inherit' | 'errors', mayEnd?: boolean }} [options]
    */
   service(name, args, { mayEnd = false, ...options } = {}) {
     const child = startNode(args, options);
