@@ -9,6 +9,7 @@ import { ProblemFilter } from './common/problem.filter.ts';
 import { RateLimitGuard } from './common/rate-limit.guard.ts';
 import { validationPipe } from './common/validation.pipe.ts';
 import { DemoModule } from './demo/demo.module.ts';
+import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
 import { HealthController } from './health/health.controller.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
@@ -18,7 +19,7 @@ import { QueueModule } from './queue/queue.module.ts';
 import { RecordModule } from './record/record.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

@@ -23,6 +23,11 @@ export const permissions = {
   'milestone.prove': ['homeowner', 'lender', 'inspector'],
   'photo.add': ['principal', 'manager', 'site', 'inspector', 'lender'],
   'photo.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
+  // where a photo was taken, and its original
+  'photo.place': [...firm, 'homeowner', 'lender'],
+  'site.locate': ['principal', 'manager'],
+  'file.add': [...firm, 'lender', 'designer'],
+  'file.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
   'change.read': [...firm, 'homeowner', 'lender', 'designer'],
   'change.price': ['principal', 'manager'],
   'change.issue': ['principal', 'manager'],
