@@ -7,7 +7,7 @@ import { newId } from '../ids.mjs';
 
 /**
  * @param {import('../types.d.ts').Act} act
- * @param {{ amount: number, currency: string, types: string[], success_url: string, cancel_url: string | null,
+ * @param {{ amount: number, currency: string, types: string[], allowed: string[] | null, excluded: string[], success_url: string, cancel_url: string | null,
  *   client_reference_id: string | null, customer_email: string | null, expires_at: number, locale: Session['locale'],
  *   metadata: Record<string, string>, submit_type: Session['submit_type'], options: Session['payment_method_options'],
  *   customer_creation: Session['customer_creation'], billing: Session['billing_address_collection'], submitText: string | null }} asked
@@ -21,7 +21,7 @@ export function newSession(act, asked) {
     adaptive_pricing: { enabled: false },
     after_expiration: null,
     allow_promotion_codes: null,
-    allowed_payment_method_types: null,
+    allowed_payment_method_types: asked.allowed,
     amount_subtotal: asked.amount,
     amount_total: asked.amount,
     automatic_tax: { enabled: false, liability: null, provider: null, status: null },
@@ -48,6 +48,7 @@ export function newSession(act, asked) {
     customer_details: asked.customer_email === null ? null : payer(asked.customer_email, null),
     customer_email: asked.customer_email,
     discounts: [],
+    excluded_payment_method_types: asked.excluded,
     expires_at: asked.expires_at,
     integration_identifier: null,
     invoice: null,

@@ -47,7 +47,7 @@ export function sendPage(response, status, { title, body, leadsTo = [] }) {
 <html lang="en-US">
 <head><meta charset="utf-8"><meta name="viewport" content="width=device-width, initial-scale=1"><title>${title}</title>
 <link rel="icon" href="data:,"><style>${new Html(style)}</style></head>
-<body><p class="tape">Stand-in payment page. No money moves.</p><main>${body}</main></body>
+<body><header class="tape">Stand-in payment page. No money moves.</header><main>${body}</main></body>
 </html>`;
   send(response, status, page.text, {
     'Content-Type': 'text/html; charset=utf-8',

@@ -1,7 +1,7 @@
 import { emit } from '../events.mjs';
 import { invalid, missing, refused } from '../errors.mjs';
 import { listPage, within } from '../lists.mjs';
-import { integer, metadata, oneOf, paging, range, readParams, text, yesNo } from '../params.mjs';
+import { integer, metadata, oneOf, paging, range, readParams, text } from '../params.mjs';
 import { close } from '../payments/disputes.mjs';
 import { refund } from '../payments/refunds.mjs';
 import { merged } from './merge.mjs';
@@ -23,7 +23,6 @@ export function createRefund({ act, form }) {
       payment_intent: text(255),
       reason: oneOf('duplicate', 'fraudulent', 'requested_by_customer'),
       metadata: metadata(),
-      refund_application_fee: yesNo(),
     },
     form,
   );

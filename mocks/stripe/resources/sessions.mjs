@@ -53,7 +53,8 @@ const options = hash({
 const createParams = {
   mode: required(oneOf('payment')),
   line_items: required(listOf(item)),
-  payment_method_types: listOf(oneOf('card', 'us_bank_account')),
+  allowed_payment_method_types: listOf(oneOf('card', 'us_bank_account')),
+  excluded_payment_method_types: listOf(oneOf('card', 'us_bank_account')),
   payment_method_options: options,
   payment_intent_data: intentData,
   success_url: required(address()),
@@ -74,7 +75,7 @@ const createParams = {
 export function createSession({ act, form }) {
   const asked = readParams(createParams, form);
   const currency = (asked.line_items[0]?.price_data.currency ?? 'usd').toLowerCase();
-  const types = asked.payment_method_types ?? ['card', 'us_bank_account'];
+  const types = offered(act, asked.allowed_payment_method_types, asked.excluded_payment_method_types ?? []);
   const items = asked.line_items.map(({ price_data: p, quantity }) =>
     newLineItem(act, { name: p.product_data.name, currency: p.currency.toLowerCase(), unit: p.unit_amount, quantity, tax_behavior: p.tax_behavior ?? null }),
   );
@@ -88,6 +89,8 @@ export function createSession({ act, form }) {
       amount,
       currency,
       types,
+      allowed: asked.allowed_payment_method_types ?? null,
+      excluded: asked.excluded_payment_method_types ?? [],
       success_url: asked.success_url,
       cancel_url: asked.cancel_url ?? null,
       client_reference_id: asked.client_reference_id ?? null,
@@ -127,7 +130,6 @@ export function createSession({ act, form }) {
  */
 function check(act, { items, currency, types, amount, fee, expires }) {
   if (items.length === 0) throw invalid('Missing required param: line_items.', { code: 'parameter_missing', param: 'line_items' });
-  if (types.length === 0) throw invalid('Missing required param: payment_method_types.', { code: 'parameter_missing', param: 'payment_method_types' });
   if (items.some((i) => i.currency !== currency)) throw invalid('All line items must have the same currency.', { param: 'line_items' });
   if (currency !== 'usd') throw invalid(`Invalid currency: ${currency}. This account takes US dollars only.`, { param: 'line_items[0][price_data][currency]' });
   if (amount < smallest) {
@@ -152,6 +154,23 @@ function check(act, { items, currency, types, amount, fee, expires }) {
   }
   const account = act.tx.find('account', act.account);
   if (account && !account.charges_enabled) throw refused('Your account cannot currently make charges.', { code: 'account_invalid' });
+  if (types.length === 0) {
+    throw refused('No valid payment method types for this Checkout Session. Please ensure that the account has an active capability for each.');
+  }
+}
+
+/**
+ * Since API version 2026-10-28 a session takes what the account can take, narrowed by lists of allowed and excluded
+ * types; the explicit `payment_method_types` is gone.
+ * @param {import('../types.d.ts').Act} act
+ * @param {string[] | undefined} allowed
+ * @param {string[]} excluded
+ */
+function offered(act, allowed, excluded) {
+  const account = act.tx.find('account', act.account);
+  const can = (/** @type {'card_payments' | 'us_bank_account_ach_payments'} */ name) => !account || account.capabilities?.[name] === 'active';
+  const eligible = [...(can('card_payments') ? ['card'] : []), ...(can('us_bank_account_ach_payments') ? ['us_bank_account'] : [])];
+  return eligible.filter((type) => (allowed === undefined || allowed.includes(type)) && !excluded.includes(type));
 }
 
 /**

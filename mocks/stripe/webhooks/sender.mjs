@@ -78,23 +78,23 @@ export class Sender {
    */
   async post(id, asked) {
     const { store } = this.world;
-    const { body, endpoint, secret, delivery, now } = store.transaction((tx) => {
+    const { body, endpoint, secret, delivery } = store.transaction((tx) => {
       const delivery = tx.find('delivery', id);
       if (!delivery) throw new Error(`There is no delivery ${id}`);
       const event = tx.find('event', delivery.event);
       const now = Math.floor(this.world.nowMs() / 1000);
       return {
+        // Indented as Stripe sends it: whoever verifies must take the bytes as they came.
         body: event ? JSON.stringify(present(tx, 'event', event, now), null, 2) : undefined,
         endpoint: tx.find('webhook_endpoint', delivery.endpoint),
         secret: tx.find('endpoint_detail', delivery.endpoint)?.secret,
         delivery,
-        now,
       };
     });
     const started = Date.now();
     // A forged header goes out once; the attempts after it are honest.
     const forge = asked ?? (delivery.attempts.length === 0 ? delivery.forge : undefined);
-    const noted = { at: now * 1000, ...(forge ? { forge } : {}) };
+    const noted = { at: started, ...(forge ? { forge } : {}) };
     if (!endpoint || secret === undefined || body === undefined) return { ...noted, ms: 0, error: 'The endpoint or the event is gone' };
     const signature = signatureHeader(body, secret, forge);
     try {
@@ -151,9 +151,11 @@ function after(delivery, attempt, pause, gone) {
   return { at: now + Math.min(longestPauseMs, pause * 2 ** Math.min(16, delivery.attempts.length)) };
 }
 
-/** @param {unknown} error */
+/**
+ * By its fields, not by its class: an error may come from another realm.
+ * @param {unknown} error
+ */
 function describe(error) {
-  if (!(error instanceof Error)) return String(error);
-  const cause = error.cause instanceof Error && 'code' in error.cause ? String(error.cause.code) : undefined;
-  return error.name === 'TimeoutError' ? 'timed out' : (cause ?? error.message);
+  const { name, message, cause } = /** @type {{ name?: unknown, message?: unknown, cause?: { code?: unknown } }} */ (error);
+  return name === 'TimeoutError' ? 'timed out' : String(cause?.code ?? message ?? error);
 }
