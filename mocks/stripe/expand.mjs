@@ -42,7 +42,8 @@ function follow(act, value, parts, path) {
   const fields = /** @type {Record<string, unknown>} */ (object);
   const inside = Object.hasOwn(fields, part) ? fields[part] : included(act, fields, part);
   if (inside === undefined) throw cannot(path);
-  if (rest.length === 0 && typeof inside === 'string' && kindOf(inside) === undefined) throw cannot(path);
+  const named = typeof inside === 'string' && kindOf(inside) !== undefined;
+  if (!named && typeof inside !== 'object') throw cannot(path);
   return { ...fields, [part]: follow(act, inside, rest, path) };
 }
 
