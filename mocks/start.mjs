@@ -80,7 +80,7 @@ function environment(settings, ports, pg) {
     MAIL_FROM: 'tallypole@example.com',
     DEMO: 'true',
     LOG_LEVEL: 'warn',
-    ...(ports.smtp ? { SMTP_URL: `smtp://127.0.0.1:${ports.smtp.port}`, MAIL_PAGE_URL: at(ports.mailPage.port) } : {}),
+    ...(ports.smtp && ports.mailPage ? { SMTP_URL: `smtp://127.0.0.1:${ports.smtp.port}`, MAIL_PAGE_URL: at(ports.mailPage.port) } : {}),
     ...(ports.stripe ? { STRIPE_API_URL: at(ports.stripe.port) } : {}),
     ...settings,
     PORT: String(ports.web.port),

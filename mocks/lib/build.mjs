@@ -26,7 +26,7 @@ const unread = /^(node_modules|dist|test|e2e|coverage|\.vite)$|\.(spec|test)\.ts
  * Hash over the names and contents of files.
  * @param {string[]} sources relative to the repository
  */
-export function fingerprint(sources) {
+function fingerprint(sources) {
   const hash = createHash('sha256').update(process.version);
   /** @param {string} file */
   const visit = (file) => {

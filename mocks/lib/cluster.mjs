@@ -182,7 +182,7 @@ export class Cluster {
  * @param {string[]} args
  * @param {import('node:child_process').SpawnSyncOptions} [options]
  */
-export function runAsOwner(program, args, options = {}) {
+function runAsOwner(program, args, options = {}) {
   const all = /** @type {import('node:child_process').SpawnSyncOptionsWithStringEncoding} */ ({ cwd: '/', encoding: 'utf8', ...options });
   return isRoot ? spawnSync('runuser', ['-u', 'postgres', '--', program, ...args], all) : spawnSync(program, args, all);
 }

@@ -11,7 +11,7 @@ const webhookPath = '/api/payments/webhook';
  */
 export async function startStandIns(house, { ports, env, data }) {
   const starting = [];
-  if (ports.smtp) {
+  if (ports.smtp && ports.mailPage) {
     const mail = { SMTP_PORT: String(ports.smtp.port), MAIL_PAGE_PORT: String(ports.mailPage.port), MAIL_DIR: path.join(data, 'mail') };
     starting.push(ready(house, 'mail server', ['mocks/mail/main.mjs'], mail));
   }

@@ -73,7 +73,7 @@ function childOf(launcher, file) {
 }
 
 const mails = async () => /** @type {any[]} */ (await (await fetch(`http://127.0.0.1:${ports['MAIL_PAGE_PORT']}/api/email`)).json()).map(({ subject }) => subject).sort();
-const people = async () => (await fetch(`http://127.0.0.1:${ports['PORT']}/api/demo/people`)).json();
+const people = async () => /** @type {any} */ (await (await fetch(`http://127.0.0.1:${ports['PORT']}/api/demo/people`)).json());
 
 beforeAll(async () => {
   await copyCheckout(folder);
