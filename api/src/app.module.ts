@@ -17,9 +17,10 @@ import { NoticesModule } from './notices/notices.module.ts';
 import { PeopleModule } from './people/people.module.ts';
 import { QueueModule } from './queue/queue.module.ts';
 import { RecordModule } from './record/record.module.ts';
+import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

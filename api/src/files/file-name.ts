@@ -1,6 +1,6 @@
 const MOST = 150;
-// separators, what some systems refuse in a name, control characters, and marks that turn the direction of reading
-const UNWELCOME = /[\\/:*?"<>|\u0000-\u001f\u007f-\u009f\u200b-\u200f\u202a-\u202e\u2060-\u2069\ufeff\ud800-\udfff]/gu;
+// what some systems refuse in a name, control characters, and marks that turn the direction of reading
+const UNWELCOME = /[:*?"<>|\p{Cc}\p{Cf}\p{Cs}]/gu;
 
 /** A file's name as it is kept and offered for download: no folder, no control characters, not hidden, bounded; the ending stays. */
 export function safeFileName(given: string): string {

@@ -1,6 +1,6 @@
 import { Inject, Injectable } from '@nestjs/common';
 import type { Request, Response } from 'express';
-import multer, { MulterError, type StorageEngine } from 'multer';
+import multer, { type StorageEngine } from 'multer';
 import { pipeline } from 'node:stream';
 import type { Answered } from '../common/command-runner.ts';
 import { Clock } from '../common/clock.ts';
@@ -10,6 +10,7 @@ import { FILE_STORAGE, type FileStorage } from './file-storage.ts';
 import { sniff } from './media-kind.ts';
 import { newStorageKey } from './storage-key.ts';
 import { UploadMeter } from './upload-meter.ts';
+import { asUploadProblem } from './upload-problem.ts';
 
 export interface Received {
   /** The text fields of the form. */
@@ -91,17 +92,4 @@ function intoStorage(storage: FileStorage, key: string): StorageEngine {
       storage.remove(key).then(() => done(null), done);
     },
   };
-}
-
-/** A size as the refusal names it. */
-const megabytes = (bytes: number): string => `${Math.floor(bytes / 1_000_000)} MB`;
-
-function asUploadProblem(error: unknown, mostBytes: number): unknown {
-  if (error instanceof MulterError) {
-    return error.code === 'LIMIT_FILE_SIZE'
-      ? new Problem('file_too_large', { detail: `The file must be smaller than ${megabytes(mostBytes)}.` })
-      : new Problem('malformed_request', { detail: 'The upload could not be read. Send one file with its fields.' });
-  }
-  // busboy's complaints about a broken form carry no code; errors of the disk do
-  return error instanceof Error && (error as NodeJS.ErrnoException).code === undefined ? new Problem('malformed_request', { detail: 'The upload broke off or could not be read. Try again.' }) : error;
 }
