@@ -9,7 +9,12 @@ export default {
   transform: {
     '\\.ts$': [
       '@swc/jest',
-      { swcrc: false, isModule: true, jsc: { parser: { syntax: 'typescript' }, target: 'es2022' }, module: { type: 'es6' } },
+      {
+        swcrc: false,
+        isModule: true,
+        jsc: { parser: { syntax: 'typescript' }, target: 'es2022' },
+        module: { type: 'es6' },
+      },
     ],
   },
 };

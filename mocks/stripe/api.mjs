@@ -34,7 +34,8 @@ export async function answerApi(world, request, response, body) {
   const id = newId('req', 14);
   const url = new URL(request.url ?? '/', 'http://stand-in');
   const method = request.method ?? 'GET';
-  const reply = (/** @type {Answer} */ { status, text, headers }) => send(response, status, text, { ...usualHeaders(request, id), ...headers });
+  const reply = (/** @type {Answer} */ { status, text, headers }) =>
+    send(response, status, text, { ...usualHeaders(request, id), ...headers });
   const fault = takeFault(world, method, url.pathname);
   try {
     if (fault?.mode === 'hang') return;
@@ -64,13 +65,17 @@ function understand(world, request, url, body, id) {
   authenticate(request.headers.authorization);
   const method = request.method ?? 'GET';
   const found = route(method, url.pathname);
-  if (body === undefined) throw new StripeFailure(413, { type: 'invalid_request_error', message: 'Request body is too large.' }, false);
+  if (body === undefined)
+    throw new StripeFailure(413, { type: 'invalid_request_error', message: 'Request body is too large.' }, false);
   const type = request.headers['content-type'] ?? '';
   if (method === 'POST' && body !== '' && !type.startsWith('application/x-www-form-urlencoded')) {
-    throw invalid('Invalid request (check that your POST content type is application/x-www-form-urlencoded). If you have any questions, we can help at https://support.stripe.com/.');
+    throw invalid(
+      'Invalid request (check that your POST content type is application/x-www-form-urlencoded). If you have any questions, we can help at https://support.stripe.com/.',
+    );
   }
   const { expand: paths = [], ...form } = parseForm(method === 'POST' ? body : url.search);
-  if (!Array.isArray(paths) || !paths.every((p) => typeof p === 'string')) throw invalid('Invalid array', { param: 'expand' });
+  if (!Array.isArray(paths) || !paths.every((p) => typeof p === 'string'))
+    throw invalid('Invalid array', { param: 'expand' });
   const key = request.headers['idempotency-key'];
   return {
     request: id,
@@ -87,12 +92,19 @@ function understand(world, request, url, body, id) {
 /** @param {string | undefined} header */
 function authenticate(header) {
   if (!header) {
-    throw unauthorized("You did not provide an API key. You need to provide your API key in the Authorization header, using Bearer auth (e.g. 'Authorization: Bearer YOUR_SECRET_KEY').");
+    throw unauthorized(
+      "You did not provide an API key. You need to provide your API key in the Authorization header, using Bearer auth (e.g. 'Authorization: Bearer YOUR_SECRET_KEY').",
+    );
   }
   const [scheme, value = ''] = header.split(' ');
-  const key = scheme?.toLowerCase() === 'basic' ? (Buffer.from(value, 'base64').toString('utf8').split(':')[0] ?? '') : value;
-  if (/^[sr]k_live_/.test(key)) throw unauthorized('This is the stand-in: a live key has no business here, and it should be rolled.');
-  if (!/^[sr]k_test_\w{3,}$/.test(key)) throw unauthorized(`Invalid API Key provided: ${key.slice(0, 8)}${'*'.repeat(Math.min(24, Math.max(0, key.length - 8)))}`);
+  const key =
+    scheme?.toLowerCase() === 'basic' ? (Buffer.from(value, 'base64').toString('utf8').split(':')[0] ?? '') : value;
+  if (/^[sr]k_live_/.test(key))
+    throw unauthorized('This is the stand-in: a live key has no business here, and it should be rolled.');
+  if (!/^[sr]k_test_\w{3,}$/.test(key))
+    throw unauthorized(
+      `Invalid API Key provided: ${key.slice(0, 8)}${'*'.repeat(Math.min(24, Math.max(0, key.length - 8)))}`,
+    );
 }
 
 /**
@@ -101,13 +113,19 @@ function authenticate(header) {
  */
 function accountOf(world, header) {
   if (header === undefined || header === '') return world.platform;
-  const known = typeof header === 'string' && (header === world.platform || world.store.transaction((tx) => tx.find('account', header)));
+  const known =
+    typeof header === 'string' &&
+    (header === world.platform || world.store.transaction((tx) => tx.find('account', header)));
   if (known) return /** @type {string} */ (header);
-  throw new StripeFailure(403, {
-    type: 'invalid_request_error',
-    code: 'account_invalid',
-    message: `The provided key does not have access to account '${String(header)}' (or that account does not exist). Application access may have been revoked.`,
-  }, false);
+  throw new StripeFailure(
+    403,
+    {
+      type: 'invalid_request_error',
+      code: 'account_invalid',
+      message: `The provided key does not have access to account '${String(header)}' (or that account does not exist). Application access may have been revoked.`,
+    },
+    false,
+  );
 }
 
 /**
@@ -127,7 +145,12 @@ async function once(world, asked, fault) {
   const id = savedId(account, key);
   const input = inputHash(method, path, { ...form, expand: asked.expand });
   const saved = savedAnswer(world.store, id, { key, input, path, nowMs: world.nowMs() });
-  if (saved) return { status: saved.status, text: saved.body, headers: { 'Idempotent-Replayed': 'true', 'Original-Request': saved.request } };
+  if (saved)
+    return {
+      status: saved.status,
+      text: saved.body,
+      headers: { 'Idempotent-Replayed': 'true', 'Original-Request': saved.request },
+    };
   const working = atWork.get(world) ?? new Set();
   atWork.set(world, working);
   if (working.has(id)) throw keyInUse(key);
@@ -150,9 +173,22 @@ async function once(world, asked, fault) {
  * @returns {Answer}
  */
 function perform(world, asked, key, fault) {
-  const failed = { status: fault?.status ?? 500, text: written(outage(500, 'An unknown error occurred').body(asked.request)), headers: { 'Stripe-Should-Retry': 'false' } };
+  const failed = {
+    status: fault?.status ?? 500,
+    text: written(outage(500, 'An unknown error occurred').body(asked.request)),
+    headers: { 'Stripe-Should-Retry': 'false' },
+  };
   const save = (/** @type {import('./store.mjs').Tx} */ tx, /** @type {Answer} */ { status, text }) => {
-    if (key) tx.put('key', asked.account, { id: key.id, input: key.input, path: asked.path, status, body: text, request: asked.request, at: world.nowMs() });
+    if (key)
+      tx.put('key', asked.account, {
+        id: key.id,
+        input: key.input,
+        path: asked.path,
+        status,
+        body: text,
+        request: asked.request,
+        at: world.nowMs(),
+      });
   };
   const origin = { id: asked.request, idempotency_key: asked.key ?? null };
   if (fault?.mode === 'error_stored') {
@@ -160,12 +196,17 @@ function perform(world, asked, key, fault) {
     return failed;
   }
   try {
-    return world.act(asked.account, (act) => {
-      const body = asked.handler({ act, form: asked.form, params: asked.params, path: asked.path });
-      const answer = fault?.mode === 'error_after' ? failed : { status: 200, text: written(expand(act, body, asked.expand)) };
-      save(act.tx, answer);
-      return answer;
-    }, asked.method === 'GET' ? undefined : origin);
+    return world.act(
+      asked.account,
+      (act) => {
+        const body = asked.handler({ act, form: asked.form, params: asked.params, path: asked.path });
+        const answer =
+          fault?.mode === 'error_after' ? failed : { status: 200, text: written(expand(act, body, asked.expand)) };
+        save(act.tx, answer);
+        return answer;
+      },
+      asked.method === 'GET' ? undefined : origin,
+    );
   } catch (error) {
     if (error instanceof StripeFailure && error.began) {
       world.store.transaction((tx) => save(tx, { status: error.status, text: written(error.body(asked.request)) }));

@@ -58,8 +58,7 @@ export const missing = (kind, id, param = 'id') =>
   });
 
 /** @param {string} message */
-export const unauthorized = (message) =>
-  new StripeFailure(401, { type: 'invalid_request_error', message }, false);
+export const unauthorized = (message) => new StripeFailure(401, { type: 'invalid_request_error', message }, false);
 
 /**
  * @param {number} status

@@ -85,7 +85,10 @@ function plan(act, event, endpoint) {
  */
 function takeRule(act, event) {
   const { tx } = act;
-  const rule = tx.all('rule').map((r) => r.value).find((r) => fits(r, event));
+  const rule = tx
+    .all('rule')
+    .map((r) => r.value)
+    .find((r) => fits(r, event));
   if (rule && rule.times !== null) {
     if (rule.times <= 1) tx.remove('rule', rule.id);
     else tx.change('rule', rule.id, { times: rule.times - 1 });

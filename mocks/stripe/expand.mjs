@@ -18,7 +18,9 @@ export function expand(act, body, paths) {
   for (const path of paths) {
     const parts = path.split('.');
     if (parts.length > deepest + (parts[0] === 'data' ? 1 : 0)) {
-      throw invalid(`You cannot expand more than ${deepest} levels of a property. Property: ${path}`, { param: 'expand' });
+      throw invalid(`You cannot expand more than ${deepest} levels of a property. Property: ${path}`, {
+        param: 'expand',
+      });
     }
     result = /** @type {object} */ (follow(act, result, parts, path));
   }
@@ -56,10 +58,19 @@ function follow(act, value, parts, path) {
 function included(act, fields, part) {
   const id = String(fields['id']);
   if (fields['object'] === 'checkout.session' && part === 'line_items') {
-    return { object: 'list', data: act.tx.find('session_detail', id)?.line_items ?? [], has_more: false, url: `/v1/checkout/sessions/${id}/line_items` };
+    return {
+      object: 'list',
+      data: act.tx.find('session_detail', id)?.line_items ?? [],
+      has_more: false,
+      url: `/v1/checkout/sessions/${id}/line_items`,
+    };
   }
   if (fields['object'] === 'charge' && part === 'refunds') {
-    const data = act.tx.all('refund', act.account).map((r) => r.value).filter((r) => r.charge === id).reverse();
+    const data = act.tx
+      .all('refund', act.account)
+      .map((r) => r.value)
+      .filter((r) => r.charge === id)
+      .reverse();
     return { object: 'list', data, has_more: false, url: `/v1/charges/${id}/refunds` };
   }
   return undefined;
@@ -76,7 +87,9 @@ function load(act, id) {
   const own = kind === 'account' ? act.tx.find('account', id) : act.tx.find(kind, id, act.account);
   // An application fee belongs to the platform, though the charge that names it doesn't.
   const found = own ?? (kind === 'application_fee' ? act.tx.find(kind, id) : undefined);
-  return found === undefined ? undefined : present(act.tx, /** @type {'charge'} */ (kind), /** @type {import('stripe').Stripe.Charge} */ (found), act.now);
+  return found === undefined
+    ? undefined
+    : present(act.tx, /** @type {'charge'} */ (kind), /** @type {import('stripe').Stripe.Charge} */ (found), act.now);
 }
 
 /** @param {string} path */

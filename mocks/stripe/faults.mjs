@@ -19,7 +19,9 @@ export function takeFault(world, method, path) {
     const fault = tx
       .all('fault')
       .map((r) => r.value)
-      .find((f) => (f.method === undefined || f.method === method) && (f.path === undefined || path.startsWith(f.path)));
+      .find(
+        (f) => (f.method === undefined || f.method === method) && (f.path === undefined || path.startsWith(f.path)),
+      );
     if (fault && fault.times !== null) {
       if (fault.times <= 1) tx.remove('fault', fault.id);
       else tx.change('fault', fault.id, { times: fault.times - 1 });

@@ -69,7 +69,10 @@ function listsOf(value) {
   const keys = Object.keys(value);
   for (const key of keys) value[key] = listsOf(value[key] ?? '');
   if (keys.length > 0 && keys.every((key) => /^\d+$/.test(key))) {
-    return keys.map(Number).sort((a, b) => a - b).map((key) => value[String(key)] ?? '');
+    return keys
+      .map(Number)
+      .sort((a, b) => a - b)
+      .map((key) => value[String(key)] ?? '');
   }
   return value;
 }

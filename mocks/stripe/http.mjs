@@ -29,7 +29,11 @@ export async function readBody(request) {
  */
 export function send(response, status, body, headers) {
   if (response.destroyed || response.headersSent) return;
-  response.writeHead(status, { 'Cache-Control': 'no-cache, no-store', 'Content-Length': Buffer.byteLength(body), ...headers });
+  response.writeHead(status, {
+    'Cache-Control': 'no-cache, no-store',
+    'Content-Length': Buffer.byteLength(body),
+    ...headers,
+  });
   response.end(body);
 }
 

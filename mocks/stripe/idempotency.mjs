@@ -22,7 +22,10 @@ export const savedId = (account, key) => `${account} ${key}`;
  * @param {string} path
  * @param {Form} form
  */
-export const inputHash = (method, path, form) => createHash('sha256').update(`${method} ${path} ${JSON.stringify(sorted(form))}`).digest('hex');
+export const inputHash = (method, path, form) =>
+  createHash('sha256')
+    .update(`${method} ${path} ${JSON.stringify(sorted(form))}`)
+    .digest('hex');
 
 /**
  * @param {import('./store.mjs').Store} store
@@ -32,32 +35,48 @@ export const inputHash = (method, path, form) => createHash('sha256').update(`${
  */
 export function savedAnswer(store, id, { key, input, path, nowMs }) {
   if (key.length > longest) {
-    throw new StripeFailure(400, { type: 'invalid_request_error', message: `Idempotency keys can be at most ${longest} characters.` }, false);
+    throw new StripeFailure(
+      400,
+      { type: 'invalid_request_error', message: `Idempotency keys can be at most ${longest} characters.` },
+      false,
+    );
   }
   const saved = store.transaction((tx) => tx.find('key', id));
   if (!saved || nowMs - saved.at >= dayMs) return undefined;
   if (saved.path !== path) {
-    throw new StripeFailure(400, {
-      type: 'idempotency_error',
-      message: `Keys for idempotent requests can only be used for the same endpoint they were first used for ('${path}' vs '${saved.path}'). Try using a key other than '${key}' if you meant to execute a different request.`,
-    }, false);
+    throw new StripeFailure(
+      400,
+      {
+        type: 'idempotency_error',
+        message: `Keys for idempotent requests can only be used for the same endpoint they were first used for ('${path}' vs '${saved.path}'). Try using a key other than '${key}' if you meant to execute a different request.`,
+      },
+      false,
+    );
   }
   if (saved.input !== input) {
-    throw new StripeFailure(400, {
-      type: 'idempotency_error',
-      message: `Keys for idempotent requests can only be used with the same parameters they were first used with. Try using a key other than '${key}' if you meant to execute a different request.`,
-    }, false);
+    throw new StripeFailure(
+      400,
+      {
+        type: 'idempotency_error',
+        message: `Keys for idempotent requests can only be used with the same parameters they were first used with. Try using a key other than '${key}' if you meant to execute a different request.`,
+      },
+      false,
+    );
   }
   return saved;
 }
 
 /** @param {string} key */
 export const keyInUse = (key) =>
-  new StripeFailure(409, {
-    type: 'idempotency_error',
-    code: 'idempotency_key_in_use',
-    message: `There is currently another in-progress request using this Idempotent Key (that probably means you submitted twice, and the other request is still going through): ${key}. Please try again later.`,
-  }, false);
+  new StripeFailure(
+    409,
+    {
+      type: 'idempotency_error',
+      code: 'idempotency_key_in_use',
+      message: `There is currently another in-progress request using this Idempotent Key (that probably means you submitted twice, and the other request is still going through): ${key}. Please try again later.`,
+    },
+    false,
+  );
 
 /**
  * The same parameters in another order are the same request.
@@ -67,5 +86,7 @@ export const keyInUse = (key) =>
 function sorted(value) {
   if (typeof value === 'string') return value;
   if (Array.isArray(value)) return value.map(sorted);
-  return Object.keys(value).sort().map((key) => [key, sorted(value[key] ?? '')]);
+  return Object.keys(value)
+    .sort()
+    .map((key) => [key, sorted(value[key] ?? '')]);
 }

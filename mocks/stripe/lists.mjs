@@ -20,7 +20,12 @@ import { present } from './present.mjs';
  * @returns {{ object: 'list', data: Array<PublicKinds[K]>, has_more: boolean, url: string }}
  */
 export function listPage(act, kind, url, paging, wanted = () => true) {
-  const all = /** @type {Array<PublicKinds[K] & { id: string }>} */ (act.tx.all(kind, act.account).map((r) => r.value).reverse());
+  const all = /** @type {Array<PublicKinds[K] & { id: string }>} */ (
+    act.tx
+      .all(kind, act.account)
+      .map((r) => r.value)
+      .reverse()
+  );
   const found = all.filter(wanted);
   const limit = paging.limit ?? 10;
   const place = (/** @type {string} */ id, /** @type {string} */ param) => {
@@ -40,7 +45,12 @@ export function listPage(act, kind, url, paging, wanted = () => true) {
     from = Math.max(0, to - limit);
     more = from > 0;
   }
-  return { object: 'list', data: found.slice(from, to).map((v) => present(act.tx, kind, v, act.now)), has_more: more, url };
+  return {
+    object: 'list',
+    data: found.slice(from, to).map((v) => present(act.tx, kind, v, act.now)),
+    has_more: more,
+    url,
+  };
 }
 
 /**

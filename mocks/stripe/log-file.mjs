@@ -1,4 +1,13 @@
-import { closeSync, existsSync, fdatasyncSync, fsyncSync, ftruncateSync, mkdirSync, openSync, readFileSync } from 'node:fs';
+import {
+  closeSync,
+  existsSync,
+  fdatasyncSync,
+  fsyncSync,
+  ftruncateSync,
+  mkdirSync,
+  openSync,
+  readFileSync,
+} from 'node:fs';
 import { renameSync, writeSync } from 'node:fs';
 import path from 'node:path';
 
@@ -81,5 +90,5 @@ export class LogFile {
  * @param {number} [position]
  */
 function writeWhole(handle, bytes, position = 0) {
-  for (let done = 0; done < bytes.length; ) done += writeSync(handle, bytes, done, bytes.length - done, position + done);
+  for (let done = 0; done < bytes.length;) done += writeSync(handle, bytes, done, bytes.length - done, position + done);
 }

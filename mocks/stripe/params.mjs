@@ -44,10 +44,21 @@ export const integer = (min = Number.MIN_SAFE_INTEGER, max = Number.MAX_SAFE_INT
   read(value, name) {
     const number = typeof value === 'string' && /^-?\d{1,16}$/.test(value) ? Number(value) : NaN;
     if (!Number.isSafeInteger(number)) {
-      throw invalid(`Invalid integer: ${typeof value === 'string' ? value : '{}'}`, { code: 'parameter_invalid_integer', param: name });
+      throw invalid(`Invalid integer: ${typeof value === 'string' ? value : '{}'}`, {
+        code: 'parameter_invalid_integer',
+        param: name,
+      });
     }
-    if (number < min) throw invalid(`This value must be greater than or equal to ${min}.`, { code: 'parameter_invalid_integer', param: name });
-    if (number > max) throw invalid(`This value must be less than or equal to ${max}.`, { code: 'parameter_invalid_integer', param: name });
+    if (number < min)
+      throw invalid(`This value must be greater than or equal to ${min}.`, {
+        code: 'parameter_invalid_integer',
+        param: name,
+      });
+    if (number > max)
+      throw invalid(`This value must be less than or equal to ${max}.`, {
+        code: 'parameter_invalid_integer',
+        param: name,
+      });
     return number;
   },
 });
@@ -77,7 +88,12 @@ export const oneOf = (...allowed) => ({
 /** @returns {Param<string>} */
 export const address = () => ({
   read(value, name) {
-    if (typeof value !== 'string' || value.length > 5000 || !URL.canParse(value.replace('{CHECKOUT_SESSION_ID}', 'x')) || !/^https?:/i.test(value)) {
+    if (
+      typeof value !== 'string' ||
+      value.length > 5000 ||
+      !URL.canParse(value.replace('{CHECKOUT_SESSION_ID}', 'x')) ||
+      !/^https?:/i.test(value)
+    ) {
       throw invalid('Not a valid URL', { code: 'url_invalid', param: name });
     }
     return value;
@@ -108,7 +124,11 @@ export const metadata = () => ({
       const at = `${name}[${key}]`;
       if (typeof part !== 'string') throw invalid('Metadata values must be strings', { param: at });
       if (key.length > 40) throw invalid(`Metadata keys must be at most 40 characters: '${key}'`, { param: name });
-      if (part.length > 500) throw invalid(`Metadata values can have up to 500 characters, but you passed in a value that is ${part.length} characters.`, { param: at });
+      if (part.length > 500)
+        throw invalid(
+          `Metadata values can have up to 500 characters, but you passed in a value that is ${part.length} characters.`,
+          { param: at },
+        );
     }
     return /** @type {Record<string, string>} */ (Object.fromEntries(pairs));
   },
@@ -176,7 +196,8 @@ export function readParams(spec, form, within) {
   for (const [key, param] of Object.entries(spec)) {
     const value = form[key];
     if (value !== undefined) read[key] = param.read(value, nameOf(key));
-    else if (param.required) throw invalid(`Missing required param: ${nameOf(key)}.`, { code: 'parameter_missing', param: nameOf(key) });
+    else if (param.required)
+      throw invalid(`Missing required param: ${nameOf(key)}.`, { code: 'parameter_missing', param: nameOf(key) });
   }
   return /** @type {Read<S>} */ (read);
 }

@@ -16,7 +16,9 @@
 export function present(tx, kind, value, now) {
   if (kind === 'event') {
     const event = /** @type {PublicKinds['event']} */ (value);
-    const open = tx.all('delivery').filter(({ value: d }) => d.event === event.id && d.state !== 'delivered' && d.state !== 'dropped').length;
+    const open = tx
+      .all('delivery')
+      .filter(({ value: d }) => d.event === event.id && d.state !== 'delivered' && d.state !== 'dropped').length;
     return /** @type {PublicKinds[K]} */ ({ ...event, pending_webhooks: open });
   }
   if (kind === 'balance_transaction') {

@@ -21,12 +21,14 @@ import * as endpoints from './resources/webhook-endpoints.mjs';
  * @param {string} [param]
  * @returns {Handler}
  */
-const one = (kind, param) => ({ act, params, form }) => {
-  readParams({}, form);
-  const found = act.tx.find(kind, params['id'] ?? '', act.account);
-  if (!found) throw missing(kind, params['id'] ?? '', param);
-  return present(act.tx, kind, found, act.now);
-};
+const one =
+  (kind, param) =>
+  ({ act, params, form }) => {
+    readParams({}, form);
+    const found = act.tx.find(kind, params['id'] ?? '', act.account);
+    if (!found) throw missing(kind, params['id'] ?? '', param);
+    return present(act.tx, kind, found, act.now);
+  };
 
 /** @type {Array<[string, Handler]>} */
 const table = [
@@ -92,8 +94,12 @@ export function route(method, path) {
     const match = m === method ? pattern.exec(path) : null;
     if (match) return { handler, params: { ...match.groups } };
   }
-  throw new StripeFailure(404, {
-    type: 'invalid_request_error',
-    message: `Unrecognized request URL (${method}: ${path}). Please see https://stripe.com/docs or we can help at https://support.stripe.com/.`,
-  }, false);
+  throw new StripeFailure(
+    404,
+    {
+      type: 'invalid_request_error',
+      message: `Unrecognized request URL (${method}: ${path}). Please see https://stripe.com/docs or we can help at https://support.stripe.com/.`,
+    },
+    false,
+  );
 }

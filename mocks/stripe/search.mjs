@@ -5,7 +5,8 @@ import { invalid } from './errors.mjs';
  * @typedef {{ field: string, key?: string, operator: ':' | '~' | '>' | '<' | '>=' | '<=', value: string | null, not: boolean }} Clause
  */
 
-const clause = /^\s*(-?)([a-z_]+)(?:\[(?:'([^']*)'|"([^"]*)")\])?\s*(:|~|>=|<=|>|<)\s*(?:'((?:[^'\\]|\\.)*)'|"((?:[^"\\]|\\.)*)"|(null|-?\d+))/i;
+const clause =
+  /^\s*(-?)([a-z_]+)(?:\[(?:'([^']*)'|"([^"]*)")\])?\s*(:|~|>=|<=|>|<)\s*(?:'((?:[^'\\]|\\.)*)'|"((?:[^"\\]|\\.)*)"|(null|-?\d+))/i;
 
 /**
  * @param {string} query such as `metadata['payment']:'42' AND status:'succeeded'`
@@ -35,7 +36,8 @@ export function parseSearch(query) {
     const link = /^\s+(AND|OR)\s+/i.exec(rest) ?? /^(\s+)(?=\S)/.exec(rest);
     if (!link) throw unreadable(query);
     const word = (link[1] ?? '').trim().toUpperCase() || 'AND';
-    if (joint !== undefined && joint !== word) throw invalid('AND and OR cannot be mixed in one query.', { param: 'query' });
+    if (joint !== undefined && joint !== word)
+      throw invalid('AND and OR cannot be mixed in one query.', { param: 'query' });
     joint = word;
     rest = rest.slice(link[0].length);
   }
@@ -49,7 +51,8 @@ export function parseSearch(query) {
 function holds(asked, object) {
   const fields = /** @type {Record<string, unknown>} */ (object);
   const whole = fields[asked.field];
-  const found = asked.key === undefined ? whole : /** @type {Record<string, unknown> | null | undefined} */ (whole)?.[asked.key];
+  const found =
+    asked.key === undefined ? whole : /** @type {Record<string, unknown> | null | undefined} */ (whole)?.[asked.key];
   return compare(asked, found) !== asked.not;
 }
 

@@ -81,11 +81,23 @@ export async function start(options = {}) {
  * @param {import('./types.d.ts').World} world
  * @param {Options} options
  */
-function applyOptions(world, { webhookUrl, webhookSecret, settleAfterMs, returnAfterMs, retryBaseMs, webhookTimeoutMs }) {
-  const given = { settle_after_ms: settleAfterMs, return_after_ms: returnAfterMs, retry_base_ms: retryBaseMs, webhook_timeout_ms: webhookTimeoutMs };
+function applyOptions(
+  world,
+  { webhookUrl, webhookSecret, settleAfterMs, returnAfterMs, retryBaseMs, webhookTimeoutMs },
+) {
+  const given = {
+    settle_after_ms: settleAfterMs,
+    return_after_ms: returnAfterMs,
+    retry_base_ms: retryBaseMs,
+    webhook_timeout_ms: webhookTimeoutMs,
+  };
   changeSettings(world, Object.fromEntries(Object.entries(given).filter(([, value]) => value !== undefined)));
-  if ((webhookUrl === undefined) !== (webhookSecret === undefined)) throw new Error('A webhook address and its secret go together');
-  setEnvironmentEndpoint(world, webhookUrl !== undefined && webhookSecret !== undefined ? { url: webhookUrl, secret: webhookSecret } : undefined);
+  if ((webhookUrl === undefined) !== (webhookSecret === undefined))
+    throw new Error('A webhook address and its secret go together');
+  setEnvironmentEndpoint(
+    world,
+    webhookUrl !== undefined && webhookSecret !== undefined ? { url: webhookUrl, secret: webhookSecret } : undefined,
+  );
 }
 
 /**
@@ -97,7 +109,8 @@ function applyOptions(world, { webhookUrl, webhookSecret, settleAfterMs, returnA
 async function answer(world, request, response, reset) {
   const body = await readBody(request);
   const pathname = (request.url ?? '/').split('?')[0] ?? '/';
-  if (pathname === '/_control' || pathname.startsWith('/_control/')) return answerControl(world, request, response, body ?? '', reset);
+  if (pathname === '/_control' || pathname.startsWith('/_control/'))
+    return answerControl(world, request, response, body ?? '', reset);
   if (pathname.startsWith('/v1') || pathname.startsWith('/v2')) return answerApi(world, request, response, body);
   answerPage(world, request, response, body ?? '');
 }
@@ -110,7 +123,8 @@ function fromEnvironment(env) {
   const whole = (/** @type {string} */ name) => {
     const text = env[name];
     if (text === undefined || text === '') return undefined;
-    if (!/^-?\d+$/.test(text)) throw new StripeFailure(400, { type: 'configuration', message: `${name} must be a whole number, not "${text}"` });
+    if (!/^-?\d+$/.test(text))
+      throw new StripeFailure(400, { type: 'configuration', message: `${name} must be a whole number, not "${text}"` });
     return Number(text);
   };
   const options = {
@@ -122,7 +136,9 @@ function fromEnvironment(env) {
     returnAfterMs: whole('STRIPE_RETURN_AFTER_MS'),
     retryBaseMs: whole('STRIPE_RETRY_BASE_MS'),
   };
-  return /** @type {Options} */ (Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined)));
+  return /** @type {Options} */ (
+    Object.fromEntries(Object.entries(options).filter(([, value]) => value !== undefined))
+  );
 }
 
 async function main() {
@@ -136,7 +152,9 @@ async function main() {
 if (process.argv[1] !== undefined && path.resolve(process.argv[1]) === fileURLToPath(import.meta.url)) {
   main().catch((error) => {
     const taken = error instanceof Error && 'code' in error && error.code === 'EADDRINUSE';
-    process.stderr.write(`[stripe] ${taken ? `port ${process.env['PORT'] ?? 4310} is taken; set PORT` : error instanceof Error ? error.message : String(error)}\n`);
+    process.stderr.write(
+      `[stripe] ${taken ? `port ${process.env['PORT'] ?? 4310} is taken; set PORT` : error instanceof Error ? error.message : String(error)}\n`,
+    );
     process.exit(1);
   });
 }

@@ -143,7 +143,9 @@ export class Tx {
    */
   put(kind, account, value) {
     const seq = this.row(kind, value.id)?.seq ?? (this.seq += 1);
-    this.changes.set(rowKey(kind, value.id), { row: { kind, id: value.id, account, seq, value: freeze(value), gone: false } });
+    this.changes.set(rowKey(kind, value.id), {
+      row: { kind, id: value.id, account, seq, value: freeze(value), gone: false },
+    });
     return value;
   }
 

@@ -30,7 +30,8 @@ export class Ticker {
       this.busy = false;
     }
     const next = this.earliest();
-    if (next?.plan.at != null) this.timer = setTimeout(() => this.tick(), Math.min(60_000, Math.max(1, next.plan.at - this.world.nowMs())));
+    if (next?.plan.at != null)
+      this.timer = setTimeout(() => this.tick(), Math.min(60_000, Math.max(1, next.plan.at - this.world.nowMs())));
   }
 
   stop() {
@@ -44,7 +45,9 @@ export class Ticker {
     try {
       this.world.act(due.account, (act) => perform(act, due.plan));
     } catch (error) {
-      this.world.log(`could not ${due.plan.step} ${due.plan.id}: ${error instanceof Error ? error.message : String(error)}`);
+      this.world.log(
+        `could not ${due.plan.step} ${due.plan.id}: ${error instanceof Error ? error.message : String(error)}`,
+      );
       this.world.store.transaction((tx) => tx.remove('plan', due.plan.id));
     }
     return true;

@@ -27,7 +27,13 @@ export const usual = {
  */
 export function openWorld({ dataDir, log }) {
   const store = new Store(dataDir);
-  const settings = () => /** @type {Settings} */ ({ ...usual, ...Object.fromEntries([...store.ofKind('setting').values()].map((r) => [r.id, /** @type {{ value: number }} */ (r.value).value])) });
+  const settings = () =>
+    /** @type {Settings} */ ({
+      ...usual,
+      ...Object.fromEntries(
+        [...store.ofKind('setting').values()].map((r) => [r.id, /** @type {{ value: number }} */ (r.value).value]),
+      ),
+    });
   const nowMs = () => Date.now() + settings().clock_offset_ms;
   /** @type {World} */
   const world = {
@@ -67,7 +73,9 @@ export function openWorld({ dataDir, log }) {
 /** @param {World} world */
 export function foundPlatform(world) {
   world.store.transaction((tx) => {
-    const known = tx.find('platform', 'platform') ?? tx.put('platform', '', { id: 'platform', account: newId('acct', 16), application: newId('ca', 32) });
+    const known =
+      tx.find('platform', 'platform') ??
+      tx.put('platform', '', { id: 'platform', account: newId('acct', 16), application: newId('ca', 32) });
     world.platform = known.account;
     world.application = known.application;
   });
@@ -82,11 +90,14 @@ export function setEnvironmentEndpoint(world, hook) {
   world.store.transaction((tx) => {
     const before = tx.all('endpoint_detail').find(({ value }) => value.connect === 'both')?.value;
     if (!hook) {
-      if (before) for (const kind of /** @type {const} */ (['webhook_endpoint', 'endpoint_detail'])) tx.remove(kind, before.id);
+      if (before)
+        for (const kind of /** @type {const} */ (['webhook_endpoint', 'endpoint_detail'])) tx.remove(kind, before.id);
       return;
     }
     const fresh = newEndpoint(Math.floor(Date.now() / 1000), hook.url, ['*'], { description: 'From the environment' });
-    const endpoint = before ? tx.change('webhook_endpoint', before.id, { url: hook.url }) : tx.put('webhook_endpoint', world.platform, fresh);
+    const endpoint = before
+      ? tx.change('webhook_endpoint', before.id, { url: hook.url })
+      : tx.put('webhook_endpoint', world.platform, fresh);
     tx.put('endpoint_detail', world.platform, { id: endpoint.id, secret: hook.secret, connect: 'both' });
   });
 }

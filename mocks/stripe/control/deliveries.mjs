@@ -19,9 +19,13 @@ const actions = ['hold', 'drop', 'twice', 'delay', ...forges];
  */
 export function listDeliveries(world, query) {
   const rows = world.store.transaction((tx) => tx.all('delivery'));
-  const fits = (/** @type {string} */ name, /** @type {string} */ value) => !query.has(name) || query.get(name) === value;
+  const fits = (/** @type {string} */ name, /** @type {string} */ value) =>
+    !query.has(name) || query.get(name) === value;
   const data = rows
-    .filter(({ account, value: d }) => fits('state', d.state) && fits('type', d.type) && fits('event', d.event) && fits('account', account))
+    .filter(
+      ({ account, value: d }) =>
+        fits('state', d.state) && fits('type', d.type) && fits('event', d.event) && fits('account', account),
+    )
     .map(({ account, value }) => ({ ...value, account }));
   return { data };
 }

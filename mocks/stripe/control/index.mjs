@@ -25,12 +25,20 @@ export async function answerControl(world, request, response, body, reset) {
   const url = new URL(request.url ?? '/', 'http://stand-in');
   const [, , what = '', id = '', step = ''] = url.pathname.split('/');
   try {
-    if (body !== '' && !(request.headers['content-type'] ?? '').startsWith('application/json')) throw wrong('Send application/json');
+    if (body !== '' && !(request.headers['content-type'] ?? '').startsWith('application/json'))
+      throw wrong('Send application/json');
     const wish = readWish(body);
-    const answer = await control(world, `${request.method ?? 'GET'} ${what}`, { id: decodeURIComponent(id), step, wish, query: url.searchParams, reset });
+    const answer = await control(world, `${request.method ?? 'GET'} ${what}`, {
+      id: decodeURIComponent(id),
+      step,
+      wish,
+      query: url.searchParams,
+      reset,
+    });
     sendJson(response, 200, answer);
   } catch (error) {
-    if (!(error instanceof StripeFailure)) world.log(`${url.pathname}: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`);
+    if (!(error instanceof StripeFailure))
+      world.log(`${url.pathname}: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`);
     const message = error instanceof Error ? error.message : String(error);
     sendJson(response, error instanceof StripeFailure ? error.status : 500, { error: { message } });
   }
@@ -85,8 +93,18 @@ function control(world, what, { id, step, wish, query, reset }) {
 /** @param {World} world */
 function overview(world) {
   const { store } = world;
-  const values = (/** @type {import('../types.d.ts').Kind} */ kind) => [...store.ofKind(kind).values()].map((r) => r.value);
-  const kinds = /** @type {const} */ (['account', 'checkout.session', 'payment_intent', 'charge', 'refund', 'dispute', 'event', 'delivery']);
+  const values = (/** @type {import('../types.d.ts').Kind} */ kind) =>
+    [...store.ofKind(kind).values()].map((r) => r.value);
+  const kinds = /** @type {const} */ ([
+    'account',
+    'checkout.session',
+    'payment_intent',
+    'charge',
+    'refund',
+    'dispute',
+    'event',
+    'delivery',
+  ]);
   return {
     platform: world.platform,
     settings: world.settings(),

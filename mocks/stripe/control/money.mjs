@@ -63,7 +63,9 @@ export function movePayment(world, id, step, wish) {
  * @param {World} world
  */
 export function settleAll(world) {
-  const open = [...world.store.ofKind('payment_intent').values()].filter(({ value }) => 'status' in value && value.status === 'processing');
+  const open = [...world.store.ofKind('payment_intent').values()].filter(
+    ({ value }) => 'status' in value && value.status === 'processing',
+  );
   for (const { id, account } of open) world.act(account, (act) => settle(act, id));
   return { settled: open.map(({ id }) => id) };
 }
@@ -82,7 +84,13 @@ export function moveSession(world, id, step, wish) {
   onlyKnown(wish, ['outcome', 'after_ms', 'code', 'email', 'name']);
   const outcome = choiceOf(wish, 'outcome', outcomes);
   if (outcome === undefined) throw wrong(`outcome is missing: one of ${outcomes.join(', ')}`);
-  const choice = { outcome, after: wholeOf(wish, 'after_ms'), code: textOf(wish, 'code'), email: textOf(wish, 'email') ?? null, name: textOf(wish, 'name') ?? null };
+  const choice = {
+    outcome,
+    after: wholeOf(wish, 'after_ms'),
+    code: textOf(wish, 'code'),
+    email: textOf(wish, 'email') ?? null,
+    name: textOf(wish, 'name') ?? null,
+  };
   return world.act(account, (act) => pay(act, id, choice));
 }
 
@@ -103,7 +111,9 @@ export function moveDispute(world, id, step) {
  */
 export function moveRefund(world, id, step) {
   if (step !== 'succeed' && step !== 'fail') throw wrong(`A refund can't ${step}; it can succeed or fail`);
-  return world.act(ownerOf(world, 'refund', id), (act) => finishRefund(act, id, step === 'succeed' ? 'succeeded' : 'failed'));
+  return world.act(ownerOf(world, 'refund', id), (act) =>
+    finishRefund(act, id, step === 'succeed' ? 'succeeded' : 'failed'),
+  );
 }
 
 /**
@@ -117,9 +127,13 @@ export function moveAccount(world, id, step) {
     const account = act.tx.find('account', id);
     if (!account) throw wrong(`There is no account ${id}`);
     if (step === 'payout') return payOut(act);
-    if (step !== 'onboard' && step !== 'restrict') throw wrong(`An account can't ${step}; it can onboard, restrict, payout`);
+    if (step !== 'onboard' && step !== 'restrict')
+      throw wrong(`An account can't ${step}; it can onboard, restrict, payout`);
     const after = act.tx.change('account', id, step === 'onboard' ? onboarded(account, act.now) : restricted(account));
-    emit(act, 'account.updated', after, { charges_enabled: account.charges_enabled, payouts_enabled: account.payouts_enabled });
+    emit(act, 'account.updated', after, {
+      charges_enabled: account.charges_enabled,
+      payouts_enabled: account.payouts_enabled,
+    });
     return after;
   });
 }

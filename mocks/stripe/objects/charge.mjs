@@ -95,7 +95,15 @@ function details(method, intent) {
     const { account_holder_type, account_type, bank_name, fingerprint, last4, routing_number } = method.us_bank_account;
     return {
       type: 'us_bank_account',
-      us_bank_account: { account_holder_type, account_type, bank_name, fingerprint, last4, payment_reference: null, routing_number },
+      us_bank_account: {
+        account_holder_type,
+        account_type,
+        bank_name,
+        fingerprint,
+        last4,
+        payment_reference: null,
+        routing_number,
+      },
     };
   }
   const card = method.card;

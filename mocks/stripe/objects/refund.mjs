@@ -19,7 +19,10 @@ export function newRefund(act, charge, { amount, reason, metadata }) {
     customer: null,
     customer_account: null,
     destination_details: card
-      ? { card: { reference_status: 'pending', reference_type: 'acquirer_reference_number', type: 'refund' }, type: 'card' }
+      ? {
+          card: { reference_status: 'pending', reference_type: 'acquirer_reference_number', type: 'refund' },
+          type: 'card',
+        }
       : { us_bank_transfer: { reference: null, reference_status: null }, type: 'us_bank_transfer' },
     metadata,
     payment_intent: charge.payment_intent,

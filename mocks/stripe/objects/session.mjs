@@ -36,12 +36,7 @@ export function newSession(act, asked) {
     currency: asked.currency,
     currency_conversion: null,
     custom_fields: [],
-    custom_text: {
-      after_submit: null,
-      shipping_address: null,
-      submit: asked.submitText === null ? null : { message: asked.submitText },
-      terms_of_service_acceptance: null,
-    },
+    custom_text: customText(asked.submitText),
     customer: null,
     customer_account: null,
     customer_creation: asked.customer_creation,
@@ -84,6 +79,17 @@ export function newSession(act, asked) {
     wallet_options: null,
   };
 }
+
+/**
+ * @param {string | null} submit
+ * @returns {Session['custom_text']}
+ */
+const customText = (submit) => ({
+  after_submit: null,
+  shipping_address: null,
+  submit: submit === null ? null : { message: submit },
+  terms_of_service_acceptance: null,
+});
 
 /**
  * @param {string | null} email

@@ -32,11 +32,13 @@ function shown(part) {
  * Cents as people write them.
  * @param {number | null} cents
  */
-export const dollars = (cents) => new Intl.NumberFormat('en-US', { style: 'currency', currency: 'USD' }).format((cents ?? 0) / 100);
+export const dollars = (cents) =>
+  new Intl.NumberFormat('en-US', { style: 'currency', currency: 'USD' }).format((cents ?? 0) / 100);
 
 /** @param {number} seconds */
 export const moment = (seconds) =>
-  new Intl.DateTimeFormat('en-US', { dateStyle: 'long', timeStyle: 'short', timeZone: 'UTC' }).format(seconds * 1000) + ' UTC';
+  new Intl.DateTimeFormat('en-US', { dateStyle: 'long', timeStyle: 'short', timeZone: 'UTC' }).format(seconds * 1000) +
+  ' UTC';
 
 /**
  * The address to go back to, with the session's id where Stripe puts it.

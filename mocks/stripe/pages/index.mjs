@@ -15,7 +15,8 @@ export function answerPage(world, request, response, body) {
   const url = new URL(request.url ?? '/', 'http://stand-in');
   const [, page = '', id = '', step] = url.pathname.split('/');
   // A form on another site must not press these buttons.
-  if (request.method === 'POST' && request.headers['sec-fetch-site'] === 'cross-site') return sendProblem(response, 403, 'This came from another site.');
+  if (request.method === 'POST' && request.headers['sec-fetch-site'] === 'cross-site')
+    return sendProblem(response, 403, 'This came from another site.');
   switch (`${request.method ?? 'GET'} ${page}`) {
     case 'GET ':
       return showDesk(world, response);

@@ -63,4 +63,7 @@ export function sendPage(response, status, { title, body, leadsTo = [] }) {
  * @param {string} message
  */
 export const sendProblem = (response, status, message) =>
-  sendPage(response, status, { title: 'Not here', body: html`<h1>${message}</h1><p><a href="/">All payments of the stand-in</a></p>` });
+  sendPage(response, status, {
+    title: 'Not here',
+    body: html`<h1>${message}</h1><p><a href="/">All payments of the stand-in</a></p>`,
+  });

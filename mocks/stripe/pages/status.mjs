@@ -21,13 +21,18 @@ import { sendPage, sendProblem } from './layout.mjs';
  */
 export function statusPage(world, response, session, problem) {
   const { intent, charge, dispute, plan } = world.store.transaction((tx) => {
-    const intent = typeof session.payment_intent === 'string' ? tx.find('payment_intent', session.payment_intent) : undefined;
+    const intent =
+      typeof session.payment_intent === 'string' ? tx.find('payment_intent', session.payment_intent) : undefined;
     const charge = typeof intent?.latest_charge === 'string' ? tx.find('charge', intent.latest_charge) : undefined;
-    const dispute = tx.all('dispute').map((r) => r.value).find((d) => d.charge === charge?.id);
+    const dispute = tx
+      .all('dispute')
+      .map((r) => r.value)
+      .find((d) => d.charge === charge?.id);
     return { intent, charge, dispute, plan: intent ? tx.find('plan', intent.id) : undefined };
   });
-  const status = dispute ? `${dispute.reason.replaceAll('_', ' ')}: dispute ${dispute.status.replaceAll('_', ' ')}` : (words[intent?.status ?? ''] ?? words[session.status ?? ''] ?? 'unknown');
-  const steps = intent?.status === 'processing' ? ['settle', 'fail'] : charge?.status === 'succeeded' && !charge.disputed ? (charge.payment_method_details?.type === 'card' ? ['dispute'] : ['return', 'dispute']) : dispute?.status === 'needs_response' ? ['won', 'lost'] : [];
+  const status = dispute
+    ? `${dispute.reason.replaceAll('_', ' ')}: dispute ${dispute.status.replaceAll('_', ' ')}`
+    : (words[intent?.status ?? ''] ?? words[session.status ?? ''] ?? 'unknown');
   sendPage(response, problem ? 400 : 200, {
     title: `${dollars(session.amount_total)}: ${status}`,
     body: html`
@@ -35,13 +40,38 @@ export function statusPage(world, response, session, problem) {
 ${problem && html`<div class="problem" role="alert"><strong>${problem}</strong></div>`}
 <dl><dt>Started</dt><dd>${moment(session.created)}</dd>
 ${intent && html`<dt>Payment</dt><dd>${intent.id}</dd>`}
-${intent?.last_payment_error && html`<dt>Reason</dt><dd>${intent.last_payment_error.message ?? ''}</dd>`}
+${intent?.last_payment_error && html`<dt>Reason</dt><dd>${intent.last_payment_error.message}</dd>`}
 ${charge && charge.amount_refunded > 0 && html`<dt>Refunded</dt><dd>${dollars(charge.amount_refunded)}</dd>`}
 ${plan && html`<dt>Next</dt><dd>${plan.step} ${plan.at === null ? 'when told to' : moment(plan.at / 1000)}</dd>`}</dl>
-${steps.length > 0 && html`<div class="row">${steps.map((step) => html`<form method="post" action="/pay/${session.id}/${step}"><button class="${step === 'settle' || step === 'won' ? '' : 'plain'}">${buttons[step] ?? step}</button></form>`)}</div>`}
-<p>${session.success_url && session.status === 'complete' && html`<a href="${filled(session.success_url, session.id)}">Back to where you came from</a> · `}<a href="/">All payments of the stand-in</a></p>`,
+<div class="row">${possible(intent, charge, dispute).map((step) => button(session.id, step))}</div>
+<p>${session.success_url && session.status === 'complete' && wayBack(filled(session.success_url, session.id))}
+<a href="/">All payments of the stand-in</a></p>`,
   });
 }
+
+/**
+ * What may happen to a payment next.
+ * @param {import('stripe').Stripe.PaymentIntent | undefined} intent
+ * @param {import('stripe').Stripe.Charge | undefined} charge
+ * @param {import('stripe').Stripe.Dispute | undefined} dispute
+ */
+function possible(intent, charge, dispute) {
+  if (intent?.status === 'processing') return ['settle', 'fail'];
+  if (dispute?.status === 'needs_response') return ['won', 'lost'];
+  if (charge?.status !== 'succeeded' || charge.disputed) return [];
+  return charge.payment_method_details?.type === 'card' ? ['dispute'] : ['return', 'dispute'];
+}
+
+/**
+ * @param {string} session
+ * @param {string} step
+ */
+const button = (session, step) => html`
+<form method="post" action="/pay/${session}/${step}">
+<button class="${step === 'settle' || step === 'won' ? 'go' : 'plain'}">${buttons[step]}</button></form>`;
+
+/** @param {string} url */
+const wayBack = (url) => html`<a href="${url}">Back to where you came from</a> · `;
 
 /** @type {Record<string, string>} */
 const words = {
@@ -53,7 +83,14 @@ const words = {
 };
 
 /** @type {Record<string, string>} */
-const buttons = { settle: 'Settle it now', fail: 'Let it fail now', return: 'Return it late', dispute: 'Dispute it', won: 'Decide for the payee', lost: 'Decide for the payer' };
+const buttons = {
+  settle: 'Settle it now',
+  fail: 'Let it fail now',
+  return: 'Return it late',
+  dispute: 'Dispute it',
+  won: 'Decide for the payee',
+  lost: 'Decide for the payer',
+};
 
 /**
  * POST /pay/:session/:step
@@ -65,7 +102,8 @@ const buttons = { settle: 'Settle it now', fail: 'Let it fail now', return: 'Ret
  */
 export function submitStep(world, response, id, step, body) {
   const session = world.store.transaction((tx) => tx.find('checkout.session', id));
-  if (!session || typeof session.payment_intent !== 'string') return sendProblem(response, 404, 'There is no such payment.');
+  if (!session || typeof session.payment_intent !== 'string')
+    return sendProblem(response, 404, 'There is no such payment.');
   const code = parseFields(body)['code'];
   try {
     if (step === 'won' || step === 'lost') decide(world, session.payment_intent, step);
@@ -84,7 +122,10 @@ export function submitStep(world, response, id, step, body) {
  */
 function decide(world, intent, status) {
   world.act(ownerOf(world, 'payment_intent', intent), (act) => {
-    const open = act.tx.all('dispute', act.account).map((r) => r.value).find((d) => d.payment_intent === intent && d.status === 'needs_response');
+    const open = act.tx
+      .all('dispute', act.account)
+      .map((r) => r.value)
+      .find((d) => d.payment_intent === intent && d.status === 'needs_response');
     close(act, open?.id ?? '', status);
   });
 }

@@ -20,7 +20,15 @@ import { collect, paid, paymentError } from './settlement.mjs';
 export const outcomes = ['settles', 'fails', 'returned', 'disputed', 'card_paid', 'card_declined', 'card_disputed'];
 
 /** The last digits of the test numbers that Stripe publishes for these results (from memory). */
-const last4 = { settles: '6789', fails: '2227', returned: '6789', disputed: '5559', card_paid: '4242', card_declined: '0002', card_disputed: '0259' };
+const last4 = {
+  settles: '6789',
+  fails: '2227',
+  returned: '6789',
+  disputed: '5559',
+  card_paid: '4242',
+  card_declined: '0002',
+  card_disputed: '0259',
+};
 
 /** @param {Outcome} outcome */
 export const methodOf = (outcome) => (outcome.startsWith('card') ? 'card' : 'us_bank_account');
@@ -35,15 +43,33 @@ export const methodOf = (outcome) => (outcome.startsWith('card') ? 'card' : 'us_
 export function pay(act, sessionId, choice) {
   const session = openSession(act, sessionId);
   const type = methodOf(choice.outcome);
-  if (!session.payment_method_types.includes(type)) throw refused(`This session doesn't take ${type === 'card' ? 'cards' : 'bank debits'}.`);
+  if (!session.payment_method_types.includes(type))
+    throw refused(`This session doesn't take ${type === 'card' ? 'cards' : 'bank debits'}.`);
   const who = { email: choice.email || session.customer_email, name: choice.name || null };
   const method = act.tx.put('payment_method', act.account, newPaymentMethod(act, type, who, last4[choice.outcome]));
   const intent = intentOf(act, session);
   if (choice.outcome === 'card_declined') return decline(act, session, intent, method);
-  const charge = act.tx.put('charge', act.account, newCharge(act, intent, method, { status: type === 'card' ? 'succeeded' : 'pending' }));
-  const complete = { customer_details: payer(who.email, who.name), payment_intent: intent.id, status: /** @type {const} */ ('complete'), url: null };
+  const charge = act.tx.put(
+    'charge',
+    act.account,
+    newCharge(act, intent, method, { status: type === 'card' ? 'succeeded' : 'pending' }),
+  );
+  const complete = {
+    customer_details: payer(who.email, who.name),
+    payment_intent: intent.id,
+    status: /** @type {const} */ ('complete'),
+    url: null,
+  };
   act.tx.remove('plan', session.id);
-  if (type === 'card') return payByCard(act, session, act.tx.change('payment_intent', intent.id, { payment_method: method.id }), charge, complete, choice);
+  if (type === 'card')
+    return payByCard(
+      act,
+      session,
+      act.tx.change('payment_intent', intent.id, { payment_method: method.id }),
+      charge,
+      complete,
+      choice,
+    );
   const processing = act.tx.change('payment_intent', intent.id, {
     last_payment_error: null,
     latest_charge: charge.id,
@@ -89,7 +115,8 @@ function payByCard(act, session, intent, charge, complete, choice) {
   emit(act, 'payment_intent.succeeded', paid(act, intent, charge.id));
   const done = act.tx.change('checkout.session', session.id, { ...complete, payment_status: 'paid' });
   emit(act, 'checkout.session.completed', done);
-  if (choice.outcome === 'card_disputed') schedule(act, { id: intent.id, step: 'dispute', after: act.world.settings().return_after_ms });
+  if (choice.outcome === 'card_disputed')
+    schedule(act, { id: intent.id, step: 'dispute', after: act.world.settings().return_after_ms });
   return done;
 }
 
@@ -121,7 +148,8 @@ function decline(act, session, intent, method) {
  * @param {Session} session
  */
 function intentOf(act, session) {
-  const before = typeof session.payment_intent === 'string' ? act.tx.find('payment_intent', session.payment_intent) : undefined;
+  const before =
+    typeof session.payment_intent === 'string' ? act.tx.find('payment_intent', session.payment_intent) : undefined;
   if (before) return before;
   const detail = act.tx.find('session_detail', session.id);
   if (!detail) throw new Error(`Session ${session.id} has lost its details`);
@@ -137,7 +165,9 @@ function intentOf(act, session) {
 function openSession(act, sessionId) {
   const session = act.tx.find('checkout.session', sessionId, act.account);
   if (session?.status !== 'open' || session.expires_at <= act.now) {
-    throw refused(`This session can't be paid: it is ${session === undefined ? 'unknown' : session.status === 'open' ? 'expired' : session.status}.`);
+    throw refused(
+      `This session can't be paid: it is ${session === undefined ? 'unknown' : session.status === 'open' ? 'expired' : session.status}.`,
+    );
   }
   return session;
 }
@@ -156,9 +186,18 @@ export function expire(act, sessionId) {
   }
   act.tx.remove('plan', sessionId);
   const expired = act.tx.change('checkout.session', sessionId, { status: 'expired', url: null });
-  const intent = typeof session.payment_intent === 'string' ? act.tx.find('payment_intent', session.payment_intent) : undefined;
+  const intent =
+    typeof session.payment_intent === 'string' ? act.tx.find('payment_intent', session.payment_intent) : undefined;
   if (intent) {
-    emit(act, 'payment_intent.canceled', act.tx.change('payment_intent', intent.id, { canceled_at: act.now, cancellation_reason: 'expired', status: 'canceled' }));
+    emit(
+      act,
+      'payment_intent.canceled',
+      act.tx.change('payment_intent', intent.id, {
+        canceled_at: act.now,
+        cancellation_reason: 'expired',
+        status: 'canceled',
+      }),
+    );
   }
   emit(act, 'checkout.session.expired', expired);
   return expired;

@@ -52,8 +52,16 @@ export function close(act, disputeId, status) {
   }
   act.tx.change('dispute', disputeId, { status });
   if (status === 'won') {
-    const back = postBalance(act, { amount: before.amount, category: 'dispute_reversal', currency: before.currency, source: disputeId, type: 'adjustment' });
-    const reinstated = act.tx.change('dispute', disputeId, { balance_transactions: [...before.balance_transactions, back] });
+    const back = postBalance(act, {
+      amount: before.amount,
+      category: 'dispute_reversal',
+      currency: before.currency,
+      source: disputeId,
+      type: 'adjustment',
+    });
+    const reinstated = act.tx.change('dispute', disputeId, {
+      balance_transactions: [...before.balance_transactions, back],
+    });
     emit(act, 'charge.dispute.funds_reinstated', reinstated);
   }
   const closed = act.tx.change('dispute', disputeId, {});
@@ -91,8 +99,10 @@ function open(act, charge, reason, fee) {
  */
 function settledCharge(act, intentId) {
   const intent = act.tx.find('payment_intent', intentId, act.account);
-  const charge = typeof intent?.latest_charge === 'string' ? act.tx.find('charge', intent.latest_charge, act.account) : undefined;
-  if (charge?.status !== 'succeeded' || charge.disputed) throw refused(`Payment ${intentId} has no settled charge that can be contested.`);
+  const charge =
+    typeof intent?.latest_charge === 'string' ? act.tx.find('charge', intent.latest_charge, act.account) : undefined;
+  if (charge?.status !== 'succeeded' || charge.disputed)
+    throw refused(`Payment ${intentId} has no settled charge that can be contested.`);
   const plan = act.tx.find('plan', intentId);
   if (plan) act.tx.remove('plan', intentId);
   return charge;

@@ -9,11 +9,21 @@ import { postBalance } from '../objects/balance-transaction.mjs';
  * @returns {import('stripe').Stripe.Payout}
  */
 export function payOut(act) {
-  const lines = act.tx.all('balance_transaction', act.account).map((r) => r.value).filter((l) => l.type !== 'payout' && !act.tx.find('paid_out', l.id));
+  const lines = act.tx
+    .all('balance_transaction', act.account)
+    .map((r) => r.value)
+    .filter((l) => l.type !== 'payout' && !act.tx.find('paid_out', l.id));
   const amount = lines.reduce((sum, line) => sum + line.net, 0);
   if (amount <= 0) throw refused('There is nothing on the balance to pay out.');
   const id = newId('po');
-  const line = postBalance(act, { amount: -amount, category: 'payout', currency: 'usd', description: 'STRIPE PAYOUT', source: id, type: 'payout' });
+  const line = postBalance(act, {
+    amount: -amount,
+    category: 'payout',
+    currency: 'usd',
+    description: 'STRIPE PAYOUT',
+    source: id,
+    type: 'payout',
+  });
   for (const paid of lines) act.tx.put('paid_out', act.account, { id: paid.id, payout: id });
   const payout = act.tx.put('payout', act.account, {
     id,

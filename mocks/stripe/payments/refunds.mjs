@@ -19,12 +19,16 @@ import { schedule } from '../plans.mjs';
  */
 export function refund(act, charge, asked) {
   const left = charge.amount - charge.amount_refunded;
-  if (charge.status !== 'succeeded') throw refused(`Charge ${charge.id} has not succeeded and can't be refunded.`, { code: 'charge_not_refundable' });
-  if (charge.disputed) throw refused(`Charge ${charge.id} has been charged back; cannot issue a refund.`, { code: 'charge_disputed' });
+  if (charge.status !== 'succeeded')
+    throw refused(`Charge ${charge.id} has not succeeded and can't be refunded.`, { code: 'charge_not_refundable' });
+  if (charge.disputed)
+    throw refused(`Charge ${charge.id} has been charged back; cannot issue a refund.`, { code: 'charge_disputed' });
   if (left === 0) throw refused(`Charge ${charge.id} has already been refunded.`, { code: 'charge_already_refunded' });
   const amount = asked.amount ?? left;
   if (amount > left) {
-    throw refused(`Refund amount (${dollars(amount)}) is greater than unrefunded amount on charge (${dollars(left)})`, { param: 'amount' });
+    throw refused(`Refund amount (${dollars(amount)}) is greater than unrefunded amount on charge (${dollars(left)})`, {
+      param: 'amount',
+    });
   }
   const fresh = newRefund(act, charge, { amount, reason: asked.reason, metadata: asked.metadata });
   const card = fresh.status === 'succeeded';
@@ -55,25 +59,34 @@ export function refund(act, charge, asked) {
  */
 export function finishRefund(act, refundId, status) {
   const before = act.tx.find('refund', refundId, act.account);
-  if (before?.status !== 'pending') throw refused(`Refund ${refundId} is not pending; its status is ${before?.status ?? 'unknown'}`);
+  if (before?.status !== 'pending')
+    throw refused(`Refund ${refundId} is not pending; its status is ${before?.status ?? 'unknown'}`);
   act.tx.remove('plan', refundId);
   if (status === 'succeeded') {
     const done = act.tx.change('refund', refundId, { status });
     emit(act, 'refund.updated', done, { status: 'pending' });
     return done;
   }
-  const line = postBalance(act, { amount: before.amount, category: 'refund_failure', currency: before.currency, source: refundId, type: 'refund_failure' });
+  const line = postBalance(act, {
+    amount: before.amount,
+    category: 'refund_failure',
+    currency: before.currency,
+    source: refundId,
+    type: 'refund_failure',
+  });
   const failed = act.tx.change('refund', refundId, {
     failure_balance_transaction: line.id,
     failure_reason: 'declined',
     status,
   });
   const charge = typeof before.charge === 'string' ? act.tx.find('charge', before.charge) : undefined;
-  if (charge) act.tx.change('charge', charge.id, { amount_refunded: charge.amount_refunded - before.amount, refunded: false });
+  if (charge)
+    act.tx.change('charge', charge.id, { amount_refunded: charge.amount_refunded - before.amount, refunded: false });
   emit(act, 'refund.updated', failed, { status: 'pending' });
   emit(act, 'refund.failed', failed);
   return failed;
 }
 
 /** @param {number} cents */
-const dollars = (cents) => `$${Math.floor(cents / 100).toLocaleString('en-US')}.${String(cents % 100).padStart(2, '0')}`;
+const dollars = (cents) =>
+  `$${Math.floor(cents / 100).toLocaleString('en-US')}.${String(cents % 100).padStart(2, '0')}`;

@@ -26,9 +26,19 @@ export function settle(act, intentId) {
   emit(act, 'payment_intent.succeeded', paid(act, intent, settled.id));
   const session = sessionOf(act, intentId);
   if (session) {
-    emit(act, 'checkout.session.async_payment_succeeded', act.tx.change('checkout.session', session.id, { payment_status: 'paid' }));
+    emit(
+      act,
+      'checkout.session.async_payment_succeeded',
+      act.tx.change('checkout.session', session.id, { payment_status: 'paid' }),
+    );
   }
-  if (plan?.then) schedule(act, { id: intentId, step: plan.then.step, after: plan.then.after, ...(plan.code ? { code: plan.code } : {}) });
+  if (plan?.then)
+    schedule(act, {
+      id: intentId,
+      step: plan.then.step,
+      after: plan.then.after,
+      ...(plan.code ? { code: plan.code } : {}),
+    });
 }
 
 /**
@@ -84,13 +94,17 @@ export function collect(act, charge) {
     description: charge.description,
     fees: [
       { amount: processingFee(method, charge.amount), description: 'Stripe processing fees', type: 'stripe_fee' },
-      ...(applicationFee > 0 ? [{ amount: applicationFee, description: 'Application fee', type: 'application_fee' }] : []),
+      ...(applicationFee > 0
+        ? [{ amount: applicationFee, description: 'Application fee', type: 'application_fee' }]
+        : []),
     ],
     source: charge.id,
     type: method === 'card' ? 'charge' : 'payment',
   });
   return act.tx.change('charge', charge.id, {
-    ...(applicationFee > 0 ? { application: act.world.application, application_fee: takeFee(act, charge, applicationFee) } : {}),
+    ...(applicationFee > 0
+      ? { application: act.world.application, application_fee: takeFee(act, charge, applicationFee) }
+      : {}),
     balance_transaction: line.id,
     paid: true,
     receipt_url: `${act.world.url}/receipt/${charge.id}`,
@@ -120,7 +134,8 @@ export const paid = (act, intent, chargeId) =>
  * @returns {NonNullable<PaymentIntent['last_payment_error']>}
  */
 export function paymentError(act, charge, code, message, declineCode) {
-  const method = typeof charge.payment_method === 'string' ? act.tx.find('payment_method', charge.payment_method) : undefined;
+  const method =
+    typeof charge.payment_method === 'string' ? act.tx.find('payment_method', charge.payment_method) : undefined;
   return {
     charge: charge.id,
     code,
@@ -145,7 +160,8 @@ export const sessionOf = (act, intentId) =>
  */
 function underWay(act, intentId) {
   const intent = act.tx.find('payment_intent', intentId, act.account);
-  const charge = typeof intent?.latest_charge === 'string' ? act.tx.find('charge', intent.latest_charge, act.account) : undefined;
+  const charge =
+    typeof intent?.latest_charge === 'string' ? act.tx.find('charge', intent.latest_charge, act.account) : undefined;
   if (intent?.status !== 'processing' || charge?.status !== 'pending') {
     throw refused(`Payment ${intentId} is not a bank debit under way; its status is ${intent?.status ?? 'unknown'}`);
   }
@@ -161,7 +177,13 @@ function underWay(act, intentId) {
 function takeFee(act, charge, amount) {
   const own = { ...act, account: act.world.platform };
   const id = newId('fee');
-  const line = postBalance(own, { amount, category: 'platform_earning', currency: charge.currency, source: id, type: 'application_fee' });
+  const line = postBalance(own, {
+    amount,
+    category: 'platform_earning',
+    currency: charge.currency,
+    source: id,
+    type: 'application_fee',
+  });
   const fee = act.tx.put('application_fee', own.account, {
     id,
     object: 'application_fee',

@@ -13,7 +13,8 @@ export function retrieveBalance({ act, form }) {
   let available = 0;
   let pending = 0;
   for (const { value } of act.tx.all('balance_transaction', act.account)) {
-    if (value.available_on <= act.now || value.type === 'payout' || act.tx.find('paid_out', value.id)) available += value.net;
+    if (value.available_on <= act.now || value.type === 'payout' || act.tx.find('paid_out', value.id))
+      available += value.net;
     else pending += value.net;
   }
   return {
@@ -45,16 +46,35 @@ export function listBalanceTransactions({ act, form, path }) {
 /** @param {Call} call */
 export function listPayouts({ act, form, path }) {
   const { created, arrival_date, status, ...page } = readParams(
-    { ...paging, created: range(), arrival_date: range(), status: oneOf('canceled', 'failed', 'in_transit', 'paid', 'pending') },
+    {
+      ...paging,
+      created: range(),
+      arrival_date: range(),
+      status: oneOf('canceled', 'failed', 'in_transit', 'paid', 'pending'),
+    },
     form,
   );
-  return listPage(act, 'payout', path, page, (p) =>
-    within(created, p.created) && within(arrival_date, p.arrival_date) && (status === undefined || p.status === status));
+  return listPage(
+    act,
+    'payout',
+    path,
+    page,
+    (p) =>
+      within(created, p.created) &&
+      within(arrival_date, p.arrival_date) &&
+      (status === undefined || p.status === status),
+  );
 }
 
 /** @param {Call} call */
 export function listApplicationFees({ act, form, path }) {
   const { created, charge, ...page } = readParams({ ...paging, created: range(), charge: text(255) }, form);
   if (act.account !== act.world.platform) throw invalid('Application fees belong to the platform.');
-  return listPage(act, 'application_fee', path, page, (f) => within(created, f.created) && (charge === undefined || f.charge === charge));
+  return listPage(
+    act,
+    'application_fee',
+    path,
+    page,
+    (f) => within(created, f.created) && (charge === undefined || f.charge === charge),
+  );
 }

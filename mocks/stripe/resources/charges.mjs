@@ -10,8 +10,17 @@ import { merged } from './merge.mjs';
 
 /** @param {Call} call */
 export function listCharges({ act, form, path }) {
-  const { created, payment_intent, ...page } = readParams({ ...paging, created: range(), payment_intent: text(255) }, form);
-  return listPage(act, 'charge', path, page, (c) => within(created, c.created) && (payment_intent === undefined || c.payment_intent === payment_intent));
+  const { created, payment_intent, ...page } = readParams(
+    { ...paging, created: range(), payment_intent: text(255) },
+    form,
+  );
+  return listPage(
+    act,
+    'charge',
+    path,
+    page,
+    (c) => within(created, c.created) && (payment_intent === undefined || c.payment_intent === payment_intent),
+  );
 }
 
 /** @param {Call} call */
@@ -29,7 +38,11 @@ export function createRefund({ act, form }) {
   if ((asked.charge === undefined) === (asked.payment_intent === undefined)) {
     throw invalid('One of the following params should be provided for this request: payment_intent or charge.');
   }
-  return refund(act, refundable(act, asked), { amount: asked.amount, reason: asked.reason ?? null, metadata: asked.metadata ?? {} });
+  return refund(act, refundable(act, asked), {
+    amount: asked.amount,
+    reason: asked.reason ?? null,
+    metadata: asked.metadata ?? {},
+  });
 }
 
 /**
@@ -37,8 +50,10 @@ export function createRefund({ act, form }) {
  * @param {{ charge?: string | undefined, payment_intent?: string | undefined }} asked
  */
 function refundable(act, asked) {
-  const intent = asked.payment_intent === undefined ? undefined : act.tx.find('payment_intent', asked.payment_intent, act.account);
-  if (asked.payment_intent !== undefined && !intent) throw missing('payment_intent', asked.payment_intent, 'payment_intent');
+  const intent =
+    asked.payment_intent === undefined ? undefined : act.tx.find('payment_intent', asked.payment_intent, act.account);
+  if (asked.payment_intent !== undefined && !intent)
+    throw missing('payment_intent', asked.payment_intent, 'payment_intent');
   if (intent && intent.status !== 'succeeded') {
     throw refused(`This PaymentIntent (${intent.id}) does not have a successful charge to refund.`);
   }
@@ -50,9 +65,20 @@ function refundable(act, asked) {
 
 /** @param {Call} call */
 export function listRefunds({ act, form, path }) {
-  const { created, charge, payment_intent, ...page } = readParams({ ...paging, created: range(), charge: text(255), payment_intent: text(255) }, form);
-  return listPage(act, 'refund', path, page, (r) =>
-    within(created, r.created) && (charge === undefined || r.charge === charge) && (payment_intent === undefined || r.payment_intent === payment_intent));
+  const { created, charge, payment_intent, ...page } = readParams(
+    { ...paging, created: range(), charge: text(255), payment_intent: text(255) },
+    form,
+  );
+  return listPage(
+    act,
+    'refund',
+    path,
+    page,
+    (r) =>
+      within(created, r.created) &&
+      (charge === undefined || r.charge === charge) &&
+      (payment_intent === undefined || r.payment_intent === payment_intent),
+  );
 }
 
 /** @param {Call} call */
@@ -60,14 +86,27 @@ export function updateRefund({ act, params, form }) {
   const asked = readParams({ metadata: metadata() }, form);
   const found = act.tx.find('refund', params['id'] ?? '', act.account);
   if (!found) throw missing('refund', params['id'] ?? '', 'refund');
-  return asked.metadata ? act.tx.change('refund', found.id, { metadata: merged(found.metadata, asked.metadata) }) : found;
+  return asked.metadata
+    ? act.tx.change('refund', found.id, { metadata: merged(found.metadata, asked.metadata) })
+    : found;
 }
 
 /** @param {Call} call */
 export function listDisputes({ act, form, path }) {
-  const { created, charge, payment_intent, ...page } = readParams({ ...paging, created: range(), charge: text(255), payment_intent: text(255) }, form);
-  return listPage(act, 'dispute', path, page, (d) =>
-    within(created, d.created) && (charge === undefined || d.charge === charge) && (payment_intent === undefined || d.payment_intent === payment_intent));
+  const { created, charge, payment_intent, ...page } = readParams(
+    { ...paging, created: range(), charge: text(255), payment_intent: text(255) },
+    form,
+  );
+  return listPage(
+    act,
+    'dispute',
+    path,
+    page,
+    (d) =>
+      within(created, d.created) &&
+      (charge === undefined || d.charge === charge) &&
+      (payment_intent === undefined || d.payment_intent === payment_intent),
+  );
 }
 
 /** @param {Call} call */
@@ -75,7 +114,11 @@ export function updateDispute({ act, params, form }) {
   const asked = readParams({ metadata: metadata() }, form);
   const found = act.tx.find('dispute', params['id'] ?? '', act.account);
   if (!found) throw missing('dispute', params['id'] ?? '', 'dispute');
-  const after = act.tx.change('dispute', found.id, asked.metadata ? { metadata: merged(found.metadata, asked.metadata) } : {});
+  const after = act.tx.change(
+    'dispute',
+    found.id,
+    asked.metadata ? { metadata: merged(found.metadata, asked.metadata) } : {},
+  );
   emit(act, 'charge.dispute.updated', after);
   return after;
 }

@@ -34,7 +34,10 @@ export function updateIntent({ act, params, form }) {
 
 /** @param {Call} call */
 export function cancelIntent({ act, params, form }) {
-  const asked = readParams({ cancellation_reason: oneOf('abandoned', 'duplicate', 'fraudulent', 'requested_by_customer') }, form);
+  const asked = readParams(
+    { cancellation_reason: oneOf('abandoned', 'duplicate', 'fraudulent', 'requested_by_customer') },
+    form,
+  );
   const intent = known(act, params['id'] ?? '');
   if (!cancelable.includes(intent.status)) {
     throw refused(
@@ -43,7 +46,9 @@ export function cancelIntent({ act, params, form }) {
     );
   }
   if (sessionOf(act, intent.id)?.status === 'open') {
-    throw refused("You can't cancel the PaymentIntent for a Checkout Session. Expire the Checkout Session instead.", { param: 'intent' });
+    throw refused("You can't cancel the PaymentIntent for a Checkout Session. Expire the Checkout Session instead.", {
+      param: 'intent',
+    });
   }
   const canceled = act.tx.change('payment_intent', intent.id, {
     canceled_at: act.now,
@@ -55,24 +60,28 @@ export function cancelIntent({ act, params, form }) {
 }
 
 /** @param {'payment_intent' | 'charge'} kind */
-const searchOf = (kind) => /** @param {Call} call */ ({ act, form, path }) => {
-  const asked = readParams({ query: required(text(5000)), limit: integer(1, 100), page: text(255) }, form);
-  const wanted = parseSearch(asked.query);
-  // Search follows the data with a lag: reading back what was just written is not what it is for.
-  const visible = act.world.nowMs() - act.world.settings().search_lag_ms;
-  const rows = /** @type {Array<import('stripe').Stripe.PaymentIntent | import('stripe').Stripe.Charge>} */ (act.tx.all(kind, act.account).map((r) => r.value));
-  const found = rows.filter((v) => v.created * 1000 <= visible && wanted(v)).reverse();
-  const limit = asked.limit ?? 10;
-  const from = asked.page === undefined ? 0 : Number(asked.page) || 0;
-  const more = found.length > from + limit;
-  return {
-    object: 'search_result',
-    data: found.slice(from, from + limit),
-    has_more: more,
-    next_page: more ? String(from + limit) : null,
-    url: path,
+const searchOf =
+  (kind) =>
+  /** @param {Call} call */ ({ act, form, path }) => {
+    const asked = readParams({ query: required(text(5000)), limit: integer(1, 100), page: text(255) }, form);
+    const wanted = parseSearch(asked.query);
+    // Search follows the data with a lag: reading back what was just written is not what it is for.
+    const visible = act.world.nowMs() - act.world.settings().search_lag_ms;
+    const rows = /** @type {Array<import('stripe').Stripe.PaymentIntent | import('stripe').Stripe.Charge>} */ (
+      act.tx.all(kind, act.account).map((r) => r.value)
+    );
+    const found = rows.filter((v) => v.created * 1000 <= visible && wanted(v)).reverse();
+    const limit = asked.limit ?? 10;
+    const from = asked.page === undefined ? 0 : Number(asked.page) || 0;
+    const more = found.length > from + limit;
+    return {
+      object: 'search_result',
+      data: found.slice(from, from + limit),
+      has_more: more,
+      next_page: more ? String(from + limit) : null,
+      url: path,
+    };
   };
-};
 
 export const searchIntents = searchOf('payment_intent');
 export const searchCharges = searchOf('charge');

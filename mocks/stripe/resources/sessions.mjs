@@ -1,10 +1,11 @@
 import { invalid, missing, refused } from '../errors.mjs';
 import { listPage, within } from '../lists.mjs';
 import { newLineItem, newSession } from '../objects/session.mjs';
-import { address, email, hash, integer, listOf, metadata, oneOf, paging, range, readParams, required, text } from '../params.mjs';
+import { email, hash, metadata, oneOf, paging, range, readParams, required, text } from '../params.mjs';
 import { expire } from '../payments/checkout.mjs';
 import { schedule } from '../plans.mjs';
 import { merged } from './merge.mjs';
+import { largest, sessionParams } from './session-params.mjs';
 
 /**
  * @typedef {import('../router.mjs').Call} Call
@@ -12,72 +13,22 @@ import { merged } from './merge.mjs';
  */
 
 const smallest = 50; // cents: Stripe's minimum charge in US dollars (from memory)
-const largest = 99_999_999; // eight digits (from memory)
 const soonest = 30 * 60;
 const latest = 24 * 60 * 60;
 
-const item = hash({
-  price_data: required(
-    hash({
-      currency: required(text(3)),
-      unit_amount: required(integer(0, largest)),
-      tax_behavior: oneOf('exclusive', 'inclusive', 'unspecified'),
-      product_data: required(hash({ name: required(text(5000)), description: text(), metadata: metadata() })),
-    }),
-  ),
-  quantity: required(integer(1, 999_999)),
-});
-
-const intentData = hash({
-  application_fee_amount: integer(0, largest),
-  capture_method: oneOf('automatic', 'automatic_async'),
-  description: text(1000),
-  metadata: metadata(),
-  receipt_email: email(),
-  statement_descriptor: text(22),
-  statement_descriptor_suffix: text(22),
-  transfer_group: text(),
-});
-
-const options = hash({
-  us_bank_account: hash({
-    financial_connections: hash({
-      permissions: listOf(oneOf('balances', 'ownership', 'payment_method', 'transactions')),
-      prefetch: listOf(oneOf('balances', 'ownership', 'transactions')),
-    }),
-    verification_method: oneOf('automatic', 'instant'),
-  }),
-  card: hash({ request_three_d_secure: oneOf('any', 'automatic', 'challenge') }),
-});
-
-const createParams = {
-  mode: required(oneOf('payment')),
-  line_items: required(listOf(item)),
-  allowed_payment_method_types: listOf(oneOf('card', 'us_bank_account')),
-  excluded_payment_method_types: listOf(oneOf('card', 'us_bank_account')),
-  payment_method_options: options,
-  payment_intent_data: intentData,
-  success_url: required(address()),
-  cancel_url: address(),
-  client_reference_id: text(200),
-  customer_email: email(),
-  customer_creation: oneOf('always', 'if_required'),
-  billing_address_collection: oneOf('auto', 'required'),
-  custom_text: hash({ submit: hash({ message: required(text(1200)) }) }),
-  expires_at: integer(0),
-  locale: text(10),
-  metadata: metadata(),
-  submit_type: oneOf('auto', 'book', 'donate', 'pay'),
-  ui_mode: oneOf('hosted_page'),
-};
-
 /** @param {Call} call */
 export function createSession({ act, form }) {
-  const asked = readParams(createParams, form);
+  const asked = readParams(sessionParams, form);
   const currency = (asked.line_items[0]?.price_data.currency ?? 'usd').toLowerCase();
   const types = offered(act, asked.allowed_payment_method_types, asked.excluded_payment_method_types ?? []);
   const items = asked.line_items.map(({ price_data: p, quantity }) =>
-    newLineItem(act, { name: p.product_data.name, currency: p.currency.toLowerCase(), unit: p.unit_amount, quantity, tax_behavior: p.tax_behavior ?? null }),
+    newLineItem(act, {
+      name: p.product_data.name,
+      currency: p.currency.toLowerCase(),
+      unit: p.unit_amount,
+      quantity,
+      tax_behavior: p.tax_behavior ?? null,
+    }),
   );
   const amount = items.reduce((sum, i) => sum + i.amount_total, 0);
   const fee = asked.payment_intent_data?.application_fee_amount ?? null;
@@ -129,33 +80,56 @@ export function createSession({ act, form }) {
  * @param {{ items: import('stripe').Stripe.LineItem[], currency: string, types: string[], amount: number, fee: number | null, expires: number | undefined }} asked
  */
 function check(act, { items, currency, types, amount, fee, expires }) {
-  if (items.length === 0) throw invalid('Missing required param: line_items.', { code: 'parameter_missing', param: 'line_items' });
-  if (items.some((i) => i.currency !== currency)) throw invalid('All line items must have the same currency.', { param: 'line_items' });
-  if (currency !== 'usd') throw invalid(`Invalid currency: ${currency}. This account takes US dollars only.`, { param: 'line_items[0][price_data][currency]' });
+  if (items.length === 0)
+    throw invalid('Missing required param: line_items.', { code: 'parameter_missing', param: 'line_items' });
+  if (items.some((i) => i.currency !== currency))
+    throw invalid('All line items must have the same currency.', { param: 'line_items' });
+  if (currency !== 'usd')
+    throw invalid(`Invalid currency: ${currency}. This account takes US dollars only.`, {
+      param: 'line_items[0][price_data][currency]',
+    });
   if (amount < smallest) {
-    throw invalid("The Checkout Session's total amount due must add up to at least $0.50 usd", { code: 'amount_too_small', param: 'line_items' });
+    throw invalid("The Checkout Session's total amount due must add up to at least $0.50 usd", {
+      code: 'amount_too_small',
+      param: 'line_items',
+    });
   }
   if (amount > largest) {
-    throw invalid("The Checkout Session's total amount due must be no more than $999,999.99 usd", { code: 'amount_too_large', param: 'line_items' });
+    throw invalid("The Checkout Session's total amount due must be no more than $999,999.99 usd", {
+      code: 'amount_too_large',
+      param: 'line_items',
+    });
   }
   if (fee !== null && fee > amount) {
-    throw invalid('Your application fee cannot exceed the amount of the payment.', { param: 'payment_intent_data[application_fee_amount]' });
-  }
-  if (fee !== null && act.account === act.world.platform) {
-    throw invalid('Can only apply an application_fee_amount when the PaymentIntent is attempting a direct payment or a destination payment.', {
+    throw invalid('Your application fee cannot exceed the amount of the payment.', {
       param: 'payment_intent_data[application_fee_amount]',
     });
   }
+  if (fee !== null && act.account === act.world.platform) {
+    throw invalid(
+      'Can only apply an application_fee_amount when the PaymentIntent is attempting a direct payment or a destination payment.',
+      {
+        param: 'payment_intent_data[application_fee_amount]',
+      },
+    );
+  }
   if (expires !== undefined && expires < act.now + soonest) {
-    throw invalid('The `expires_at` timestamp must be at least 30 minutes from Checkout Session creation.', { param: 'expires_at' });
+    throw invalid('The `expires_at` timestamp must be at least 30 minutes from Checkout Session creation.', {
+      param: 'expires_at',
+    });
   }
   if (expires !== undefined && expires > act.now + latest + 60) {
-    throw invalid('The `expires_at` timestamp must be less than 24 hours from Checkout Session creation.', { param: 'expires_at' });
+    throw invalid('The `expires_at` timestamp must be less than 24 hours from Checkout Session creation.', {
+      param: 'expires_at',
+    });
   }
   const account = act.tx.find('account', act.account);
-  if (account && !account.charges_enabled) throw refused('Your account cannot currently make charges.', { code: 'account_invalid' });
+  if (account && !account.charges_enabled)
+    throw refused('Your account cannot currently make charges.', { code: 'account_invalid' });
   if (types.length === 0) {
-    throw refused('No valid payment method types for this Checkout Session. Please ensure that the account has an active capability for each.');
+    throw refused(
+      'No valid payment method types for this Checkout Session. Please ensure that the account has an active capability for each.',
+    );
   }
 }
 
@@ -168,8 +142,12 @@ function check(act, { items, currency, types, amount, fee, expires }) {
  */
 function offered(act, allowed, excluded) {
   const account = act.tx.find('account', act.account);
-  const can = (/** @type {'card_payments' | 'us_bank_account_ach_payments'} */ name) => !account || account.capabilities?.[name] === 'active';
-  const eligible = [...(can('card_payments') ? ['card'] : []), ...(can('us_bank_account_ach_payments') ? ['us_bank_account'] : [])];
+  const can = (/** @type {'card_payments' | 'us_bank_account_ach_payments'} */ name) =>
+    !account || account.capabilities?.[name] === 'active';
+  const eligible = [
+    ...(can('card_payments') ? ['card'] : []),
+    ...(can('us_bank_account_ach_payments') ? ['us_bank_account'] : []),
+  ];
   return eligible.filter((type) => (allowed === undefined || allowed.includes(type)) && !excluded.includes(type));
 }
 
@@ -181,7 +159,11 @@ function offered(act, allowed, excluded) {
 const shownOptions = (types, asked) => ({
   ...(types.includes('card') ? { card: { request_three_d_secure: /** @type {const} */ ('automatic') } } : {}),
   ...(types.includes('us_bank_account')
-    ? { us_bank_account: { verification_method: asked?.us_bank_account?.verification_method === 'instant' ? 'instant' : 'automatic' } }
+    ? {
+        us_bank_account: {
+          verification_method: asked?.us_bank_account?.verification_method === 'instant' ? 'instant' : 'automatic',
+        },
+      }
     : {}),
 });
 
@@ -204,8 +186,15 @@ export function listSessions({ act, form, path }) {
     form,
   );
   return listPage(act, 'checkout.session', path, page, (s) => {
-    const mail = customer_details === undefined || s.customer_details?.email?.toLowerCase() === customer_details.email.toLowerCase();
-    return mail && within(created, s.created) && (payment_intent === undefined || s.payment_intent === payment_intent) && (status === undefined || s.status === status);
+    const mail =
+      customer_details === undefined ||
+      s.customer_details?.email?.toLowerCase() === customer_details.email.toLowerCase();
+    return (
+      mail &&
+      within(created, s.created) &&
+      (payment_intent === undefined || s.payment_intent === payment_intent) &&
+      (status === undefined || s.status === status)
+    );
   });
 }
 
@@ -213,7 +202,9 @@ export function listSessions({ act, form, path }) {
 export function updateSession({ act, params, form }) {
   const asked = readParams({ metadata: metadata() }, form);
   const session = known(act, params['id'] ?? '');
-  return asked.metadata ? act.tx.change('checkout.session', session.id, { metadata: merged(session.metadata, asked.metadata) }) : session;
+  return asked.metadata
+    ? act.tx.change('checkout.session', session.id, { metadata: merged(session.metadata, asked.metadata) })
+    : session;
 }
 
 /** @param {Call} call */
@@ -226,7 +217,12 @@ export function expireSession({ act, params, form }) {
 export function listLineItems({ act, params, form, path }) {
   readParams(paging, form);
   const session = known(act, params['id'] ?? '');
-  return { object: 'list', data: act.tx.find('session_detail', session.id)?.line_items ?? [], has_more: false, url: path };
+  return {
+    object: 'list',
+    data: act.tx.find('session_detail', session.id)?.line_items ?? [],
+    has_more: false,
+    url: path,
+  };
 }
 
 /**

@@ -32,13 +32,18 @@ export function createEndpoint({ act, form }) {
   if (asked.api_version !== undefined && asked.api_version !== apiVersion) {
     throw invalid(`This stand-in speaks API version ${apiVersion} only.`, { param: 'api_version' });
   }
-  if (act.tx.all('webhook_endpoint', act.account).length >= most) throw invalid(`You have reached the maximum of ${most} test webhook endpoints.`);
+  if (act.tx.all('webhook_endpoint', act.account).length >= most)
+    throw invalid(`You have reached the maximum of ${most} test webhook endpoints.`);
   const secret = newId('whsec', 32);
-  const endpoint = act.tx.put('webhook_endpoint', act.account, newEndpoint(act.now, asked.url, asked.enabled_events, {
-    api_version: asked.api_version ?? null,
-    description: asked.description ?? null,
-    metadata: asked.metadata ?? {},
-  }));
+  const endpoint = act.tx.put(
+    'webhook_endpoint',
+    act.account,
+    newEndpoint(act.now, asked.url, asked.enabled_events, {
+      api_version: asked.api_version ?? null,
+      description: asked.description ?? null,
+      metadata: asked.metadata ?? {},
+    }),
+  );
   act.tx.put('endpoint_detail', act.account, { id: endpoint.id, secret, connect: asked.connect ?? false });
   return { ...endpoint, secret };
 }
@@ -73,7 +78,13 @@ export function listEndpoints({ act, form, path }) {
 /** @param {Call} call */
 export function updateEndpoint({ act, params, form }) {
   const asked = readParams(
-    { url: address(), enabled_events: listOf(text(255), 500), description: text(), disabled: yesNo(), metadata: metadata() },
+    {
+      url: address(),
+      enabled_events: listOf(text(255), 500),
+      description: text(),
+      disabled: yesNo(),
+      metadata: metadata(),
+    },
     form,
   );
   const endpoint = known(act, params['id'] ?? '');

@@ -95,7 +95,8 @@ export class Sender {
     // A forged header goes out once; the attempts after it are honest.
     const forge = asked ?? (delivery.attempts.length === 0 ? delivery.forge : undefined);
     const noted = { at: started, ...(forge ? { forge } : {}) };
-    if (!endpoint || secret === undefined || body === undefined) return { ...noted, ms: 0, error: 'The endpoint or the event is gone' };
+    if (!endpoint || secret === undefined || body === undefined)
+      return { ...noted, ms: 0, error: 'The endpoint or the event is gone' };
     const signature = signatureHeader(body, secret, forge);
     try {
       const response = await fetch(endpoint.url, {
@@ -126,7 +127,10 @@ export class Sender {
       const delivery = tx.find('delivery', id);
       if (!delivery) return; // reset while it was under way
       const gone = !tx.find('webhook_endpoint', delivery.endpoint);
-      tx.change('delivery', id, { ...after(delivery, attempt, this.world.settings().retry_base_ms, gone), attempts: [...delivery.attempts, attempt].slice(-attemptsKept) });
+      tx.change('delivery', id, {
+        ...after(delivery, attempt, this.world.settings().retry_base_ms, gone),
+        attempts: [...delivery.attempts, attempt].slice(-attemptsKept),
+      });
     });
   }
 }
@@ -156,6 +160,8 @@ function after(delivery, attempt, pause, gone) {
  * @param {unknown} error
  */
 function describe(error) {
-  const { name, message, cause } = /** @type {{ name?: unknown, message?: unknown, cause?: { code?: unknown } }} */ (error);
+  const { name, message, cause } = /** @type {{ name?: unknown, message?: unknown, cause?: { code?: unknown } }} */ (
+    error
+  );
   return name === 'TimeoutError' ? 'timed out' : String(cause?.code ?? message ?? error);
 }

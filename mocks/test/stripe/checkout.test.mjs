@@ -32,7 +32,12 @@ describe('a payment by Checkout', () => {
 
   it('opens without a PaymentIntent and shows the sum, the address and when it ends', async () => {
     const session = await h.checkout();
-    expect(session).toMatchObject({ amount_total: 1_250_000, payment_intent: null, payment_status: 'unpaid', status: 'open' });
+    expect(session).toMatchObject({
+      amount_total: 1_250_000,
+      payment_intent: null,
+      payment_status: 'unpaid',
+      status: 'open',
+    });
     expect(session.expires_at - session.created).toBe(24 * 60 * 60);
     expect(session.url).toBe(`${h.url}/pay/${session.id}`);
   });
@@ -41,31 +46,50 @@ describe('a payment by Checkout', () => {
     const { session, intent } = await paid({ outcome: 'settles' });
     expect(session).toMatchObject({ payment_status: 'unpaid', status: 'complete', url: null });
     expect((await h.intent(intent)).status).toBe('processing');
-    await arrived(intent, ['payment_intent.created', 'charge.pending', 'payment_intent.processing', 'checkout.session.completed']);
+    await arrived(intent, [
+      'payment_intent.created',
+      'charge.pending',
+      'payment_intent.processing',
+      'checkout.session.completed',
+    ]);
     await h.control(`payments/${intent}/settle`);
     await arrived(intent, ['charge.succeeded', 'payment_intent.succeeded', 'checkout.session.async_payment_succeeded']);
     for (const { raw, signature } of hook.received) {
       const event = h.stripe.webhooks.constructEvent(raw, signature, webhookSecret);
       expect(event).toMatchObject({ account: h.account.id, object: 'event' });
     }
-    const after = await h.stripe.checkout.sessions.retrieve(session.id, { expand: ['payment_intent.latest_charge.balance_transaction'] }, h.on);
+    const after = await h.stripe.checkout.sessions.retrieve(
+      session.id,
+      { expand: ['payment_intent.latest_charge.balance_transaction'] },
+      h.on,
+    );
     expect(after).toMatchObject({
       payment_status: 'paid',
       // F07 (secondary pages of 2025 and 2026): 0.8 % of $12,500.00 would be $100.00; the fee is capped at $5.00.
-      payment_intent: { amount_received: 1_250_000, latest_charge: { balance_transaction: { fee: 500, net: 1_249_500, type: 'payment' }, paid: true }, metadata: { attempt: 'attempt-1' } },
+      payment_intent: {
+        amount_received: 1_250_000,
+        latest_charge: { balance_transaction: { fee: 500, net: 1_249_500, type: 'payment' }, paid: true },
+        metadata: { attempt: 'attempt-1' },
+      },
     });
   });
 
   it('settles by itself after the delay that was chosen on the page', async () => {
     const { session } = await paid({ outcome: 'settles', after: '50' });
-    await eventually(async () => (await h.stripe.checkout.sessions.retrieve(session.id, {}, h.on)).payment_status === 'paid');
+    await eventually(
+      async () => (await h.stripe.checkout.sessions.retrieve(session.id, {}, h.on)).payment_status === 'paid',
+    );
   });
 
   it('takes a debit that fails back to unpaid and names the reason', async () => {
     const { session, intent } = await paid({ outcome: 'fails', code: 'R02', after: '0' });
     await arrived(intent, ['charge.failed', 'payment_intent.payment_failed', 'checkout.session.async_payment_failed']);
     const found = await h.intent(intent);
-    expect(found).toMatchObject({ amount_received: 0, last_payment_error: { code: 'account_closed' }, status: 'requires_payment_method' });
+    expect(found).toMatchObject({
+      amount_received: 0,
+      last_payment_error: { code: 'account_closed' },
+      status: 'requires_payment_method',
+    });
     expect((await h.stripe.checkout.sessions.retrieve(session.id, {}, h.on)).payment_status).toBe('unpaid');
     const fees = await h.stripe.balanceTransactions.list({ type: 'stripe_fee' }, h.on);
     expect(fees.data[0]).toMatchObject({ net: -400 }); // F07: a failed debit costs $4
@@ -99,7 +123,8 @@ describe('a payment by Checkout', () => {
   it('pays a card at once, less 2.9 % and 30 cents', async () => {
     const { session, intent } = await paid({ outcome: 'card_paid' });
     expect(session.payment_status).toBe('paid');
-    const charge = (await h.stripe.charges.list({ payment_intent: intent, expand: ['data.balance_transaction'] }, h.on)).data[0];
+    const charge = (await h.stripe.charges.list({ payment_intent: intent, expand: ['data.balance_transaction'] }, h.on))
+      .data[0];
     expect(charge?.balance_transaction).toMatchObject({ fee: 36_280, net: 1_213_720 }); // F07
     await arrived(intent, ['charge.succeeded', 'payment_intent.succeeded', 'checkout.session.completed']);
     expect(typesFor(intent)).not.toContain('checkout.session.async_payment_succeeded');
@@ -111,10 +136,20 @@ describe('a payment by Checkout', () => {
     expect(declined.status).toBe(402);
     expect(await declined.text()).toContain('Your card was declined.');
     const between = await h.stripe.checkout.sessions.retrieve(session.id, { expand: ['payment_intent'] }, h.on);
-    expect(between).toMatchObject({ payment_intent: { last_payment_error: { code: 'card_declined', type: 'card_error' }, status: 'requires_payment_method' }, status: 'open' });
+    expect(between).toMatchObject({
+      payment_intent: {
+        last_payment_error: { code: 'card_declined', type: 'card_error' },
+        status: 'requires_payment_method',
+      },
+      status: 'open',
+    });
     await submit(session.url, { outcome: 'card_paid' });
     const after = await h.stripe.checkout.sessions.retrieve(session.id, { expand: ['payment_intent'] }, h.on);
-    expect(after.payment_intent).toMatchObject({ id: /** @type {any} */ (between.payment_intent).id, last_payment_error: null, status: 'succeeded' });
+    expect(after.payment_intent).toMatchObject({
+      id: /** @type {any} */ (between.payment_intent).id,
+      last_payment_error: null,
+      status: 'succeeded',
+    });
   });
 
   it('takes a session once, not twice', async () => {
@@ -129,7 +164,9 @@ describe('a payment by Checkout', () => {
     const first = await h.checkout();
     const expired = await h.stripe.checkout.sessions.expire(first.id, {}, h.on);
     expect(expired).toMatchObject({ status: 'expired', url: null });
-    expect((await refusal(h.stripe.checkout.sessions.expire(first.id, {}, h.on))).message).toContain('status of `expired`');
+    expect((await refusal(h.stripe.checkout.sessions.expire(first.id, {}, h.on))).message).toContain(
+      'status of `expired`',
+    );
     expect((await submit(first.url, { outcome: 'settles' })).status).toBe(200);
     expect((await h.stripe.checkout.sessions.retrieve(first.id, {}, h.on)).payment_intent).toBeNull();
   });
@@ -137,7 +174,10 @@ describe('a payment by Checkout', () => {
   it('refunds a part, then the rest, then nothing more; a bank takes days to have it', async () => {
     const { intent } = await paid({ outcome: 'settles', after: '0' });
     await arrived(intent, ['payment_intent.succeeded']);
-    const part = await h.stripe.refunds.create({ payment_intent: intent, amount: 250_000, metadata: { why: 'overpaid' } }, h.on);
+    const part = await h.stripe.refunds.create(
+      { payment_intent: intent, amount: 250_000, metadata: { why: 'overpaid' } },
+      h.on,
+    );
     expect(part).toMatchObject({ amount: 250_000, metadata: { why: 'overpaid' }, status: 'pending' });
     await arrived(intent, ['refund.created', 'charge.refunded']);
     await h.control(`refunds/${part.id}/succeed`);
@@ -148,20 +188,28 @@ describe('a payment by Checkout', () => {
     expect(rest.amount).toBe(1_000_000);
     const charge = await h.stripe.charges.retrieve(String(rest.charge), {}, h.on);
     expect(charge).toMatchObject({ amount_refunded: 1_250_000, refunded: true });
-    expect((await refusal(h.stripe.refunds.create({ payment_intent: intent }, h.on))).code).toBe('charge_already_refunded');
+    expect((await refusal(h.stripe.refunds.create({ payment_intent: intent }, h.on))).code).toBe(
+      'charge_already_refunded',
+    );
     await h.control(`refunds/${rest.id}/fail`);
-    expect(await h.stripe.charges.retrieve(charge.id, {}, h.on)).toMatchObject({ amount_refunded: 250_000, refunded: false });
+    expect(await h.stripe.charges.retrieve(charge.id, {}, h.on)).toMatchObject({
+      amount_refunded: 250_000,
+      refunded: false,
+    });
     await arrived(intent, ['refund.failed']);
   });
 
   it('refuses to refund what has not settled', async () => {
     const { intent } = await paid({ outcome: 'settles' });
-    expect((await refusal(h.stripe.refunds.create({ payment_intent: intent }, h.on))).message).toContain('does not have a successful charge');
+    expect((await refusal(h.stripe.refunds.create({ payment_intent: intent }, h.on))).message).toContain(
+      'does not have a successful charge',
+    );
   });
 
   it("takes the platform's fee from a direct charge", async () => {
     const { intent } = await paid({ outcome: 'card_paid' }, { payment_intent_data: { application_fee_amount: 5000 } });
-    const charge = (await h.stripe.charges.list({ payment_intent: intent, expand: ['data.balance_transaction'] }, h.on)).data[0];
+    const charge = (await h.stripe.charges.list({ payment_intent: intent, expand: ['data.balance_transaction'] }, h.on))
+      .data[0];
     expect(charge?.balance_transaction).toMatchObject({ net: 1_250_000 - 36_280 - 5000 });
     const fee = await h.stripe.applicationFees.retrieve(String(charge?.application_fee));
     expect(fee).toMatchObject({ account: h.account.id, amount: 5000, charge: charge?.id });
@@ -182,7 +230,9 @@ describe('a payment by Checkout', () => {
     const refused = await refusal(h.stripe.paymentIntents.cancel(intent, {}, h.on));
     expect(refused).toMatchObject({ code: 'payment_intent_unexpected_state', statusCode: 400 });
     await h.control(`payments/${intent}/fail`);
-    expect((await h.stripe.paymentIntents.cancel(intent, { cancellation_reason: 'abandoned' }, h.on)).status).toBe('canceled');
+    expect((await h.stripe.paymentIntents.cancel(intent, { cancellation_reason: 'abandoned' }, h.on)).status).toBe(
+      'canceled',
+    );
   });
 
   it('finds a payment by its metadata, with the lag that search has', async () => {

@@ -24,7 +24,12 @@ export async function receiver(answer = () => 200) {
     request.setEncoding('utf8').on('data', (/** @type {string} */ part) => (raw += part));
     request.on('end', () => {
       const status = answer(received.length + 1);
-      received.push({ raw, signature: String(request.headers['stripe-signature'] ?? ''), event: JSON.parse(raw), status });
+      received.push({
+        raw,
+        signature: String(request.headers['stripe-signature'] ?? ''),
+        event: JSON.parse(raw),
+        status,
+      });
       response.writeHead(status).end();
     });
   });
@@ -45,7 +50,14 @@ export async function receiver(answer = () => 200) {
  * @param {import('stripe').Stripe.StripeConfig} [more]
  */
 export const sdk = (port, more = {}) =>
-  new Stripe('sk_test_demo_key', { host: '127.0.0.1', port, protocol: 'http', telemetry: false, maxNetworkRetries: 0, ...more });
+  new Stripe('sk_test_demo_key', {
+    host: '127.0.0.1',
+    port,
+    protocol: 'http',
+    telemetry: false,
+    maxNetworkRetries: 0,
+    ...more,
+  });
 
 /**
  * A stand-in with an account that can take payments, in a folder of its own.
@@ -53,15 +65,28 @@ export const sdk = (port, more = {}) =>
  */
 export async function house(options = {}) {
   const dataDir = options.dataDir ?? tempFolder();
-  const standIn = await start({ port: 0, dataDir, settleAfterMs: -1, returnAfterMs: -1, retryBaseMs: 20, log: () => undefined, ...options });
+  const standIn = await start({
+    port: 0,
+    dataDir,
+    settleAfterMs: -1,
+    returnAfterMs: -1,
+    retryBaseMs: 20,
+    log: () => undefined,
+    ...options,
+  });
   const stripe = sdk(standIn.port);
-  const control = (/** @type {string} */ where, /** @type {object} */ wish = {}, method = 'POST') => call(standIn.url, where, wish, method);
+  const control = (/** @type {string} */ where, /** @type {object} */ wish = {}, method = 'POST') =>
+    call(standIn.url, where, wish, method);
   const account = await stripe.accounts.create({
     type: 'express',
     country: 'US',
     email: 'books@fernhollow.example',
     business_profile: { name: 'Fern Hollow Builders' },
-    capabilities: { card_payments: { requested: true }, transfers: { requested: true }, us_bank_account_ach_payments: { requested: true } },
+    capabilities: {
+      card_payments: { requested: true },
+      transfers: { requested: true },
+      us_bank_account_ach_payments: { requested: true },
+    },
   });
   await control(`accounts/${account.id}/onboard`);
   const on = { stripeAccount: account.id };
@@ -90,7 +115,12 @@ export async function house(options = {}) {
 export const sessionParams = (more = {}) => ({
   mode: 'payment',
   allowed_payment_method_types: ['us_bank_account', 'card'],
-  line_items: [{ quantity: 1, price_data: { currency: 'usd', unit_amount: 1_250_000, product_data: { name: 'Draw 2, your own share' } } }],
+  line_items: [
+    {
+      quantity: 1,
+      price_data: { currency: 'usd', unit_amount: 1_250_000, product_data: { name: 'Draw 2, your own share' } },
+    },
+  ],
   customer_email: 'owner@maple.example',
   success_url: 'http://127.0.0.1:4300/paid?session={CHECKOUT_SESSION_ID}',
   cancel_url: 'http://127.0.0.1:4300/not-paid',
@@ -108,7 +138,9 @@ export const sessionParams = (more = {}) => ({
 export async function call(url, where, wish, method) {
   const response = await fetch(`${url}/_control/${where}`, {
     method,
-    ...(wish === undefined || method === 'GET' ? {} : { body: JSON.stringify(wish), headers: { 'Content-Type': 'application/json' } }),
+    ...(wish === undefined || method === 'GET'
+      ? {}
+      : { body: JSON.stringify(wish), headers: { 'Content-Type': 'application/json' } }),
   });
   const body = /** @type {any} */ (await response.json());
   if (!response.ok) throw new Error(`${where}: ${JSON.stringify(body)}`);
@@ -120,7 +152,8 @@ export async function call(url, where, wish, method) {
  * @param {string | null} url
  * @param {Record<string, string>} fields
  */
-export const submit = (url, fields) => fetch(String(url), { method: 'POST', body: new URLSearchParams({ step: 'pay', ...fields }), redirect: 'manual' });
+export const submit = (url, fields) =>
+  fetch(String(url), { method: 'POST', body: new URLSearchParams({ step: 'pay', ...fields }), redirect: 'manual' });
 
 /**
  * Waits until a check holds.
@@ -146,6 +179,8 @@ export async function eventually(check, within = 5000) {
  */
 export const refusal = (work) =>
   work.then(
-    () => { throw new Error('It was not refused'); },
+    () => {
+      throw new Error('It was not refused');
+    },
     (error) => error,
   );

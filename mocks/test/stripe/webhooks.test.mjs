@@ -44,7 +44,9 @@ describe('webhooks', () => {
       return found.length > 0 ? found : undefined;
     });
     expect(delivery.attempts).toHaveLength(4);
-    const gaps = delivery.attempts.slice(1).map((/** @type {{ at: number }} */ a, /** @type {number} */ i) => a.at - delivery.attempts[i].at);
+    const gaps = delivery.attempts
+      .slice(1)
+      .map((/** @type {{ at: number }} */ a, /** @type {number} */ i) => a.at - delivery.attempts[i].at);
     expect(gaps[2]).toBeGreaterThan(gaps[0]);
   });
 
@@ -65,7 +67,12 @@ describe('webhooks', () => {
     await payByCard(h);
     expect(hook.received).toEqual([]);
     await h.control('deliveries/release', { order: 'reversed' });
-    expect(hook.types()).toEqual(['checkout.session.completed', 'payment_intent.succeeded', 'charge.succeeded', 'payment_intent.created']);
+    expect(hook.types()).toEqual([
+      'checkout.session.completed',
+      'payment_intent.succeeded',
+      'charge.succeeded',
+      'payment_intent.created',
+    ]);
     expect(await h.deliveries('?state=held')).toEqual([]);
   });
 
@@ -90,7 +97,8 @@ describe('webhooks', () => {
     const verify = (/** @type {import('./helpers.mjs').Received | undefined} */ r) => () =>
       sdk(1).webhooks.constructEvent(r?.raw ?? '', r?.signature ?? '', webhookSecret);
     await h.control('rules', { type: 'payment_intent.succeeded', action: 'bad_signature' });
-    for (const type of ['payment_intent.created', 'charge.succeeded', 'checkout.session.completed']) await h.control('rules', { type, action: 'drop' });
+    for (const type of ['payment_intent.created', 'charge.succeeded', 'checkout.session.completed'])
+      await h.control('rules', { type, action: 'drop' });
     await payByCard(h);
     await eventually(() => hook.received.length === 2);
     expect(verify(hook.received[0])).toThrow('No signatures found matching the expected signature');
@@ -107,7 +115,11 @@ describe('webhooks', () => {
     const connected = await receiver();
     const own = await receiver();
     ends.push(connected.close, own.close);
-    const made = await h.stripe.webhookEndpoints.create({ url: connected.url, enabled_events: ['payment_intent.succeeded', 'application_fee.created'], connect: true });
+    const made = await h.stripe.webhookEndpoints.create({
+      url: connected.url,
+      enabled_events: ['payment_intent.succeeded', 'application_fee.created'],
+      connect: true,
+    });
     await h.stripe.webhookEndpoints.create({ url: own.url, enabled_events: ['*'] });
     const session = await h.checkout({ payment_intent_data: { application_fee_amount: 100 } });
     await h.control(`sessions/${session.id}/pay`, { outcome: 'card_paid' });
@@ -116,7 +128,9 @@ describe('webhooks', () => {
     expect(own.types()).toEqual(['application_fee.created']);
     expect(own.received[0]?.event.account).toBeUndefined();
     const [first] = connected.received;
-    expect(sdk(1).webhooks.constructEvent(first?.raw ?? '', first?.signature ?? '', made.secret ?? '').account).toBe(h.account.id);
+    expect(sdk(1).webhooks.constructEvent(first?.raw ?? '', first?.signature ?? '', made.secret ?? '').account).toBe(
+      h.account.id,
+    );
     expect((await h.stripe.webhookEndpoints.retrieve(made.id)).secret).toBeUndefined();
     await h.stripe.webhookEndpoints.del(made.id);
     await payByCard(h);
@@ -129,12 +143,22 @@ describe('webhooks', () => {
     const { createServer } = await import('node:http');
     const mute = createServer(() => undefined);
     await new Promise((done) => mute.listen(0, '127.0.0.1', () => done(undefined)));
-    ends.push(async () => { mute.closeAllConnections(); mute.close(); });
+    ends.push(async () => {
+      mute.closeAllConnections();
+      mute.close();
+    });
     const bound = mute.address();
     const port = typeof bound === 'object' && bound !== null ? bound.port : 0;
-    const made = await h.stripe.webhookEndpoints.create({ url: `http://127.0.0.1:${port}/`, enabled_events: ['charge.succeeded'], connect: true });
+    const made = await h.stripe.webhookEndpoints.create({
+      url: `http://127.0.0.1:${port}/`,
+      enabled_events: ['charge.succeeded'],
+      connect: true,
+    });
     await payByCard(h);
-    const stuck = async () => (await h.deliveries('?type=charge.succeeded')).find((/** @type {{ endpoint: string }} */ d) => d.endpoint === made.id);
+    const stuck = async () =>
+      (await h.deliveries('?type=charge.succeeded')).find(
+        (/** @type {{ endpoint: string }} */ d) => d.endpoint === made.id,
+      );
     await eventually(async () => (await stuck()).attempts.length >= 2);
     expect((await stuck()).attempts[0].error).toBe('timed out');
     expect((await stuck()).state).toBe('waiting');
