@@ -23,6 +23,22 @@ const atEnd = [];
 const found = {};
 const say = (/** @type {string} */ line) => console.log(`· ${line}`);
 
+/** @type {Map<string, Promise<void>>} */
+const done = new Map();
+/** @type {Record<import('./lib/suites.mjs').Need, () => Promise<void>>} */
+const setUps = {
+  api: () => build(say, ['api'], watchOver),
+  portal: () => build(say, ['portal'], watchOver),
+  chromium: async () => {
+    found['CHROMIUM'] = requireChromium(say);
+  },
+  postgres: async () => {
+    const pg = await testPostgres();
+    atEnd.push(pg.stop);
+    found['TEST_PG'] = JSON.stringify(pg.address);
+  },
+};
+
 for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
   process.on(signal, () => {
     console.error(`\nStopped by ${signal}.`);
@@ -62,22 +78,6 @@ function watchOver(child) {
   child.once('exit', () => running.delete(child));
 }
 
-/** @type {Map<string, Promise<void>>} */
-const done = new Map();
-/** @type {Record<import('./lib/suites.mjs').Need, () => Promise<void>>} */
-const setUps = {
-  api: () => build(say, ['api'], watchOver),
-  portal: () => build(say, ['portal'], watchOver),
-  chromium: async () => {
-    found['CHROMIUM'] = requireChromium(say);
-  },
-  postgres: async () => {
-    const pg = await testPostgres();
-    atEnd.push(pg.stop);
-    found['TEST_PG'] = JSON.stringify(pg.address);
-  },
-};
-
 /** Sets one thing up, once. @param {import('./lib/suites.mjs').Need} need */
 function setUp(need) {
   const before = done.get(need) ?? setUps[need]();
@@ -99,7 +99,8 @@ async function runSuite(suite) {
   }
   const report = path.join(reports, `${name}.json`);
   const jest = suite.runner === 'jest' ? { NODE_OPTIONS: '--experimental-vm-modules --disable-warning=ExperimentalWarning' } : {};
-  const child = startNode(command(suite, report), { cwd: path.join(root, workspace), env: { ...jest, ...found, NODE_ENV: 'test' } });
+  const plain = process.stdout.isTTY ? {} : { NO_COLOR: '1' };
+  const child = startNode(command(suite, report), { cwd: path.join(root, workspace), env: { ...jest, ...found, ...plain, NODE_ENV: 'test' } });
   const { code } = await finish(child, budget * 3000, watchOver);
   killGroup(child, 'SIGKILL'); // whatever a crash left behind
   return { name, budget, seconds: seconds(), count: readReport(report, code, root) };

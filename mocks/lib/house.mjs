@@ -10,6 +10,8 @@ export class House {
   #passing = new Set();
   /** @type {Map<string, ChildProcess>} */
   #services = new Map();
+  /** What the others call while they end. @type {Set<ChildProcess>} */
+  #standIns = new Set();
   /** @type {(() => Promise<unknown> | unknown)[]} */
   #last = [];
   /** @type {Promise<void> | undefined} */
@@ -55,11 +57,13 @@ export class House {
    * Starts a process that has to stay. Its end stops the whole house, unless `mayEnd`.
    * @param {string} name
    * @param {string[]} args of node
-   * @param {{ cwd?: string, env?: Record<string, string | undefined>, output?: 'inherit' | 'errors', mayEnd?: boolean }} [options]
+   * @param {{ cwd?: string, env?: Record<string, string | undefined>, output?: 'inherit' | 'errors', mayEnd?: boolean, standIn?: boolean }} [options]
+   *   standIn: the others call it, so it is stopped after them
    */
-  service(name, args, { mayEnd = false, ...options } = {}) {
+  service(name, args, { mayEnd = false, standIn = false, ...options } = {}) {
     const child = startNode(args, options);
     this.#services.set(name, child);
+    if (standIn) this.#standIns.add(child);
     child.once('error', (error) => void this.fail(new Failure(`The ${name} could not be started: ${error.message}`)));
     child.once('exit', (code, signal) => {
       if (this.stopping || this.#services.get(name) !== child) return;
@@ -92,7 +96,9 @@ export class House {
   /** @param {number} code */
   async #stop(code) {
     if (this.#services.size > 0) console.log('\nStopping …');
-    await stopAll([...this.#passing, ...this.#services.values()]);
+    const all = [...this.#passing, ...this.#services.values()];
+    await stopAll(all.filter((child) => !this.#standIns.has(child)));
+    await stopAll([...this.#standIns]);
     for (const act of this.#last.reverse()) {
       try {
         await act();

@@ -37,7 +37,7 @@ export async function startStandIns(house, { ports, env, data }) {
  */
 function ready(house, name, args, env) {
   return new Promise((resolve, reject) => {
-    const child = house.service(name, args, { env, output: 'errors' });
+    const child = house.service(name, args, { env, output: 'errors', standIn: true });
     const bomb = setTimeout(() => reject(new Failure(`The ${name} did not become ready within 30 seconds.`)), 30_000);
     child.once('message', () => {
       clearTimeout(bomb);

@@ -37,7 +37,7 @@ export function suites() {
   const all = [
     { name: 'shared', runner: 'vitest', workspace: 'shared', budget: 60, needs: [] },
     { name: 'portal', runner: 'vitest', workspace: 'portal', budget: 60, needs: [] },
-    { name: 'mocks', runner: 'jest', workspace: 'mocks', budget: 120, needs: ['api'] },
+    { name: 'mocks', runner: 'jest', workspace: 'mocks', budget: 120, needs: ['api', 'portal'] },
     { name: 'api', runner: 'jest', workspace: 'api', budget: 300, needs: ['api', 'postgres'] },
     { name: 'faults', runner: 'jest', workspace: 'api', config: 'jest.faults.config.mjs', budget: 240, needs: ['api', 'postgres'] },
     { name: 'browser', runner: 'vitest', workspace: 'portal', config: 'vitest.e2e.config.ts', budget: 360, needs: ['api', 'portal', 'postgres', 'chromium'] },
