@@ -32,49 +32,60 @@ import { foundPlatform, openWorld, setEnvironmentEndpoint } from './world.mjs';
  */
 
 /**
- * Starts the stand-in on 127.0.0.1.
+ * Starts the stand-in on 127.0.0.1. A folder serves one stand-in at a time.
  * @param {Options} [options]
  * @returns {Promise<{ url: string, port: number, platform: string, close: () => Promise<void> }>}
  */
 export async function start(options = {}) {
   const log = options.log ?? ((line) => void process.stderr.write(`[stripe] ${line}\n`));
-  const home = fileURLToPath(new URL('../../.data/stripe', import.meta.url));
-  const { world, look, close } = openWorld({ dataDir: path.resolve(options.dataDir ?? home), log });
-  const settle = () => applyOptions(world, options);
-  const server = createServer((request, response) => {
-    answer(world, request, response, () => {
-      world.store.clear();
-      foundPlatform(world);
-      settle();
-    }).catch((error) => {
-      log(error instanceof Error ? (error.stack ?? error.message) : String(error));
-      response.destroy();
-    });
-  });
+  const server = createServer();
+  // The port comes first: whoever can't have it must not touch the file of whoever has.
+  server.listen(options.port ?? 4310, '127.0.0.1');
+  await once(server, 'listening');
+  /** @type {(() => void) | undefined} */
+  let closeWorld;
+  const close = async () => {
+    const ended = once(server, 'close');
+    server.close();
+    server.closeAllConnections();
+    await ended;
+    closeWorld?.();
+  };
   try {
-    server.listen(options.port ?? 4310, '127.0.0.1');
-    await once(server, 'listening');
+    const house = openWorld({ dataDir: path.resolve(options.dataDir ?? home), log });
+    closeWorld = house.close;
+    const { world } = house;
     const bound = server.address();
     const port = typeof bound === 'object' && bound !== null ? bound.port : 0;
     world.url = `http://127.0.0.1:${port}`;
-    settle();
-    look();
-    return {
-      url: world.url,
-      port,
-      platform: world.platform,
-      async close() {
-        const ended = once(server, 'close');
-        server.close();
-        server.closeAllConnections();
-        await ended;
-        close();
-      },
-    };
+    applyOptions(world, options);
+    server.on('request', (request, response) => serve(world, options, request, response));
+    house.look();
+    return { url: world.url, port, platform: world.platform, close };
   } catch (error) {
-    close();
+    await close();
     throw error;
   }
+}
+
+const home = fileURLToPath(new URL('../../.data/stripe', import.meta.url));
+
+/**
+ * @param {import('./types.d.ts').World} world
+ * @param {Options} options
+ * @param {import('node:http').IncomingMessage} request
+ * @param {import('node:http').ServerResponse} response
+ */
+function serve(world, options, request, response) {
+  const reset = () => {
+    world.store.clear();
+    foundPlatform(world);
+    applyOptions(world, options);
+  };
+  answer(world, request, response, reset).catch((error) => {
+    world.log(error instanceof Error ? (error.stack ?? error.message) : String(error));
+    response.destroy();
+  });
 }
 
 /**

@@ -317,4 +317,15 @@ describe('an outage', () => {
     await expect(h.control('faults', { mode: 'error', time: 1 })).rejects.toThrow('Unknown field time');
     await expect(h.control('payments/pi_none/settle')).rejects.toThrow('There is no payment_intent pi_none');
   });
+
+  it('leaves nothing behind after a reset but the settings it was started with', async () => {
+    await h.control('settings', { search_lag_ms: 5 });
+    await h.control('reset');
+    expect((await h.stripe.accounts.list()).data).toEqual([]);
+    const after = await (await fetch(`${h.url}/_control`)).json();
+    expect(after).toMatchObject({
+      counts: { charge: 0, event: 0 },
+      settings: { search_lag_ms: 0, settle_after_ms: -1 },
+    });
+  });
 });

@@ -164,12 +164,14 @@ describe('a restart', () => {
     expect(third.said()).toContain("line 2 can't be read");
   });
 
-  it('says in one line that its port is taken', async () => {
-    const { port } = await setUp();
-    const folder = tempFolder();
-    ends.push(() => rmSync(folder, { recursive: true, force: true }));
-    const second = await run({ PORT: String(port), STRIPE_DATA_DIR: folder });
+  it('says in one line that its port is taken, and leaves the file of the other alone', async () => {
+    const { port, env, first, stripe, on } = await setUp();
+    const second = await run(env);
     expect(await second.ended).toBe(1);
     expect(second.said().trim()).toBe(`[stripe] port ${port} is taken; set PORT`);
+    const session = await stripe.checkout.sessions.create(sessionParams(), on);
+    await first.stop('SIGKILL');
+    await run(env);
+    expect((await stripe.checkout.sessions.retrieve(session.id, {}, on)).id).toBe(session.id);
   });
 });
