@@ -1,0 +1,10 @@
+export { mapBudget } from './budget.ts';
+export type { MappedLine } from './budget.ts';
+export { dayCount } from './day-count.ts';
+export type { DayCountBasis } from './day-count.ts';
+export { loanInBalance } from './loan-in-balance.ts';
+export type { InBalance, InBalanceInput } from './loan-in-balance.ts';
+export { loanInterest } from './loan-interest.ts';
+export type { BalancePeriod } from './loan-interest.ts';
+export { whoPays } from './who-pays.ts';
+export type { BudgetPosition, Equity, WhoPays, WhoPaysInput } from './who-pays.ts';
