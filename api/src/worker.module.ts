@@ -5,7 +5,9 @@ import { CONFIGURATION, type Configuration } from './common/configuration.ts';
 import { ConfigurationModule } from './common/configuration.module.ts';
 import { connectionOptions } from './database/connection.ts';
 import { models } from './database/models.ts';
+import { LedgerModule } from './ledger/ledger.module.ts';
 import { NoticesModule } from './notices/notices.module.ts';
+import { SettlementModule } from './payments/settlement.module.ts';
 import { QueueModule } from './queue/queue.module.ts';
 import { RecordModule } from './record/record.module.ts';
 
@@ -20,5 +22,5 @@ const workerConnection = (name?: string) =>
   });
 
 /** The same parts as the web process, on the worker's own role. */
-@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, NoticesModule] })
+@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, SettlementModule] })
 export class WorkerModule {}

@@ -21,8 +21,8 @@ await startOrExplain(async () => {
     concurrency: 4,
     pollInterval: 1_000,
     noHandleSignals: true,
-    // old limits and answered keys go once a day
-    crontab: '20 3 * * * sweep_old',
+    // old limits and answered keys go once a day; what Stripe did without our hearing of it is asked for each minute
+    crontab: '20 3 * * * sweep_old\n* * * * * sweep_payments',
     events: sweep.events,
     taskList: tasks(app, mailer),
     logger: new QueueLogger(() => (level, message, meta) => {

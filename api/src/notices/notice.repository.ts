@@ -40,4 +40,20 @@ export class NoticeRepository {
     ]);
     await this.queue.enqueue(tx, 'send_notice', { noticeId: id, firmId: notice.firmId }, { key: `notice:${id}` });
   }
+
+  /** Several mails of one act in two statements, however many there are. */
+  async postAll(tx: Tx, notices: readonly Notice[]): Promise<void> {
+    if (notices.length === 0) return;
+    const rows = notices.map(({ firmId, jobId, kind, to, data }) => {
+      const address = 'personId' in to ? { person_id: to.personId } : { to_email: to.email, to_name: to.name };
+      return { id: v7(), firm_id: firmId, job_id: jobId ?? null, kind, data, ...address };
+    });
+    await tx.rows(
+      `insert into notice (id, firm_id, job_id, kind, person_id, to_email, to_name, data, created_at)
+       select id, firm_id, job_id, kind, person_id, to_email, to_name, data, $2 from jsonb_to_recordset($1::jsonb)
+         as r (id uuid, firm_id uuid, job_id uuid, kind text, person_id uuid, to_email text, to_name text, data jsonb)`,
+      [JSON.stringify(rows), this.clock.now()],
+    );
+    await this.queue.enqueueMany(tx, 'send_notice', rows.map(({ id, firm_id }) => ({ key: `notice:${id}`, payload: { noticeId: id, firmId: firm_id } })));
+  }
 }

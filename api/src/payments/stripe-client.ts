@@ -147,6 +147,9 @@ export class StripeClient {
 }
 
 const seconds = (instant: Date) => Math.floor(instant.getTime() / 1000) - CLOCK_SLACK_SECONDS;
+// Stripe's types allow states that it may add later; what isn't known here counts as still open
+const ENDED_SESSIONS = ['complete', 'expired'] as const;
+const MOVED_INTENTS = ['succeeded', 'processing', 'canceled'] as const;
 const idOf = (value: string | { id: string } | null | undefined): string | null => (typeof value === 'string' ? value : (value?.id ?? null));
 
 function newsOf(event: Stripe.Event, account: string | undefined): StripeNews {
@@ -171,7 +174,7 @@ const accountFacts = (account: Stripe.Account): AccountFacts => ({
 
 const sessionFacts = (session: Stripe.Checkout.Session): SessionFacts => ({
   id: session.id,
-  status: session.status === 'complete' || session.status === 'expired' ? session.status : 'open',
+  status: ENDED_SESSIONS.find((known) => known === session.status) ?? 'open',
   url: session.url,
   expiresAt: new Date(session.expires_at * 1000),
   intentId: idOf(session.payment_intent),
@@ -184,7 +187,7 @@ function paymentFacts(intent: Stripe.PaymentIntent, refunds: Stripe.Refund[], di
   return {
     intentId: intent.id,
     paymentId: intent.metadata['payment_id'] ?? null,
-    status: intent.status === 'succeeded' || intent.status === 'processing' || intent.status === 'canceled' ? intent.status : 'unpaid',
+    status: MOVED_INTENTS.find((known) => known === intent.status) ?? 'unpaid',
     attempted: intent.last_payment_error !== null,
     receivedCents: intent.amount_received,
     feeCents: balance?.fee ?? null,

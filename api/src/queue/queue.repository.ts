@@ -14,4 +14,10 @@ export class QueueRepository {
   async enqueue(tx: Tx, task: string, payload: { readonly [name: string]: Json }, options: QueueOptions = {}): Promise<void> {
     await tx.rows('select graphile_worker.enqueue($1, $2::json, $3, $4)', [task, JSON.stringify(payload), options.key ?? null, options.runAt ?? null]);
   }
+
+  /** The same for many jobs of one task in one statement, each with a key of its own. */
+  async enqueueMany(tx: Tx, task: string, jobs: readonly { key: string; payload: { readonly [name: string]: Json } }[]): Promise<void> {
+    if (jobs.length === 0) return;
+    await tx.rows(`select graphile_worker.enqueue($1, (j->'payload')::json, j->>'key') from jsonb_array_elements($2::jsonb) j`, [task, JSON.stringify(jobs)]);
+  }
 }

@@ -6,6 +6,7 @@ import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
 import { UnitOfWork } from '../common/unit-of-work.ts';
 import type { Mailer } from '../notices/mailer.ts';
 import { sendNotice } from '../notices/send-notice.repository.ts';
+import { paymentTasks } from '../payments/payment-tasks.ts';
 
 const CodeJob = z.object({ codeId: z.uuid() });
 const NoticeJob = z.object({ noticeId: z.uuid(), firmId: z.uuid() });
@@ -16,6 +17,7 @@ export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
   const configuration = app.get<Configuration>(CONFIGURATION);
   const settings = { secret: configuration.CODE_SECRET, publicUrl: configuration.PUBLIC_URL };
   return {
+    ...paymentTasks(app),
     send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
     send_notice: (payload) => sendNotice(work, mailer, configuration.PUBLIC_URL, NoticeJob.parse(payload)),
     sweep_old: async () => {

@@ -91,8 +91,8 @@ create table draw_objection (
   id uuid primary key,
   draw_id uuid not null,
   line_id uuid not null,
-  -- of this draw's sum on the line, what may be paid
-  approved_cents app.cents not null check (approved_cents >= 0),
+  -- what of this draw on the line is not approved
+  objected_cents app.cents not null check (objected_cents > 0),
   reason text not null check (length(reason) between 3 and 1000),
   by_person uuid not null references person (id),
   at timestamptz(3) not null,
