@@ -13,14 +13,18 @@ import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
 import { HealthController } from './health/health.controller.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
+import { MilestonesModule } from './milestones/milestones.module.ts';
+import { LedgerModule } from './ledger/ledger.module.ts';
 import { NoticesModule } from './notices/notices.module.ts';
+import { PaymentsModule } from './payments/payments.module.ts';
 import { PeopleModule } from './people/people.module.ts';
+import { PhotosModule } from './photos/photos.module.ts';
 import { QueueModule } from './queue/queue.module.ts';
 import { RecordModule } from './record/record.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

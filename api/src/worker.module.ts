@@ -5,6 +5,7 @@ import { CONFIGURATION, type Configuration } from './common/configuration.ts';
 import { ConfigurationModule } from './common/configuration.module.ts';
 import { connectionOptions } from './database/connection.ts';
 import { models } from './database/models.ts';
+import { StorageModule } from './files/files.module.ts';
 import { LedgerModule } from './ledger/ledger.module.ts';
 import { NoticesModule } from './notices/notices.module.ts';
 import { SettlementModule } from './payments/settlement.module.ts';
@@ -22,5 +23,5 @@ const workerConnection = (name?: string) =>
   });
 
 /** The same parts as the web process, on the worker's own role. */
-@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, SettlementModule] })
+@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, StorageModule, SettlementModule] })
 export class WorkerModule {}

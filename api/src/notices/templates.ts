@@ -4,7 +4,30 @@ import { fileURLToPath } from 'node:url';
 import path from 'node:path';
 
 /** Every kind of mail; each has its folder of three templates: head (subject, preheader, heading, why), text and html. */
-export const noticeKinds = ['sign-in-code', 'invitation', 'invitation-accepted'] as const;
+export const noticeKinds = [
+  'sign-in-code',
+  'invitation',
+  'invitation-accepted',
+  'milestone-claimed',
+  'milestone-seen',
+  'milestone-reopened',
+  'draw-submitted',
+  'draw-to-review',
+  'draw-returned',
+  'draw-objected',
+  'draw-objected-homeowner',
+  'draw-approved',
+  'draw-approved-homeowner',
+  'draw-to-fund',
+  'draw-split-changed',
+  'draw-funded',
+  'payment-receipt',
+  'payment-received',
+  'payment-failed',
+  'payment-failed-office',
+  'payment-returned',
+  'payment-returned-office',
+] as const;
 export type NoticeKind = (typeof noticeKinds)[number];
 
 export interface Mail {

@@ -7,6 +7,7 @@ import { UnitOfWork } from '../common/unit-of-work.ts';
 import type { Mailer } from '../notices/mailer.ts';
 import { sendNotice } from '../notices/send-notice.repository.ts';
 import { paymentTasks } from '../payments/payment-tasks.ts';
+import { photoTasks } from '../photos/photo-tasks.ts';
 
 const CodeJob = z.object({ codeId: z.uuid() });
 const NoticeJob = z.object({ noticeId: z.uuid(), firmId: z.uuid() });
@@ -18,6 +19,7 @@ export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
   const settings = { secret: configuration.CODE_SECRET, publicUrl: configuration.PUBLIC_URL };
   return {
     ...paymentTasks(app),
+    ...photoTasks(app),
     send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
     send_notice: (payload) => sendNotice(work, mailer, configuration.PUBLIC_URL, NoticeJob.parse(payload)),
     sweep_old: async () => {

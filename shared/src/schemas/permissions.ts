@@ -21,6 +21,7 @@ export const permissions = {
   'milestone.plan': ['principal', 'manager'],
   'milestone.claim': ['principal', 'manager', 'site'],
   'milestone.prove': ['homeowner', 'lender', 'inspector'],
+  'milestone.reopen': ['principal', 'manager', 'homeowner', 'lender', 'inspector'],
   'photo.add': ['principal', 'manager', 'site', 'inspector', 'lender'],
   'photo.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
   // where a photo was taken, and its original

@@ -13,6 +13,8 @@ create table milestone (
   actual_on date,
   -- in place as last seen from outside the firm
   percent app.rate not null default 0,
+  -- when work on it began, as the firm said
+  started_at timestamptz(3),
   claimed_at timestamptz(3),
   claimed_by uuid references person (id),
   proven_at timestamptz(3),
@@ -118,7 +120,8 @@ create table inspection (
   unique (firm_id, id),
   foreign key (firm_id, job_id) references job (firm_id, id),
   foreign key (firm_id, milestone_id) references milestone (firm_id, id),
-  check (result <> 'passed' or percent = 10000)
+  check (result <> 'passed' or percent = 10000),
+  check (result <> 'partial' or percent < 10000)
 );
 create index on inspection (milestone_id, at);
 create index on inspection (job_id);

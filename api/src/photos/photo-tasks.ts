@@ -1,0 +1,16 @@
+import type { INestApplicationContext } from '@nestjs/common';
+import type { TaskList } from 'graphile-worker';
+import { z } from 'zod';
+import { UnitOfWork } from '../common/unit-of-work.ts';
+import { FILE_STORAGE, type FileStorage } from '../files/file-storage.ts';
+import { processPhoto } from './process-photo.ts';
+
+const PhotoJob = z.object({ photoId: z.uuid(), firmId: z.uuid() });
+
+export function photoTasks(app: INestApplicationContext): TaskList {
+  const work = app.get(UnitOfWork);
+  const storage = app.get<FileStorage>(FILE_STORAGE);
+  return {
+    process_photo: (payload) => processPhoto(work, storage, PhotoJob.parse(payload)),
+  };
+}
