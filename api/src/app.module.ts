@@ -9,11 +9,15 @@ import { ProblemFilter } from './common/problem.filter.ts';
 import { RateLimitGuard } from './common/rate-limit.guard.ts';
 import { validationPipe } from './common/validation.pipe.ts';
 import { DemoModule } from './demo/demo.module.ts';
+import { DrawsModule } from './draws/draws.module.ts';
 import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
 import { HealthController } from './health/health.controller.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
 import { MilestonesModule } from './milestones/milestones.module.ts';
+import { LendingModule } from './lending/lending.module.ts';
+import { LoansModule } from './loans/loans.module.ts';
+import { MoneyModule } from './money/money.module.ts';
 import { LedgerModule } from './ledger/ledger.module.ts';
 import { NoticesModule } from './notices/notices.module.ts';
 import { PaymentsModule } from './payments/payments.module.ts';
@@ -24,7 +28,7 @@ import { RecordModule } from './record/record.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

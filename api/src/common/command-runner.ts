@@ -25,7 +25,7 @@ export interface Answered<T> {
 export class CommandRunner {
   constructor(private readonly work: UnitOfWork) {}
 
-  run<T extends Json>(actor: Actor, command: Command<T>): Promise<Answered<T>> {
+  run<T extends Json | object>(actor: Actor, command: Command<T>): Promise<Answered<T>> {
     const hash = createHash('sha256').update(canonical(command.input)).digest();
     const id = [actor.personId, command.operation, command.key];
     return this.work.write(actor, async (tx) => {
