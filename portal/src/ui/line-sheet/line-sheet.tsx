@@ -1,4 +1,5 @@
-import type { ReactNode } from 'react';
+import { useCallback, type ReactNode } from 'react';
+import { sheetKeys } from './sheet-keys.ts';
 import { SheetRow } from './sheet-row.tsx';
 import { useSheet } from './use-sheet.ts';
 import type { CellEdit, SheetColumn } from './types.ts';
@@ -28,12 +29,15 @@ export interface LineSheetProps<Row> {
  * (outside of the component or in useMemo), so that 500 lines stay quick.
  */
 export function LineSheet<Row>({ label, rows, rowKey, columns, onEdit, canGrow = false, group, totals }: LineSheetProps<Row>) {
-  const sheet = useSheet({ rows, columns, onEdit, canGrow });
-  const { active, draft } = sheet;
+  const sheet = { rows, columns, onEdit, canGrow };
+  const { table, active, draft, setDraft, go, open, close, pick, onEditorKey } = useSheet(sheet);
+  const keys = draft === null ? sheetKeys(sheet, active, { go, open }) : {};
+  const onOpen = useCallback((row: number, column: number) => open({ row, column }), [open]);
+  const onLeave = useCallback(() => close(true), [close]);
   return (
     <div className={classes['scroll']}>
-      <table ref={sheet.table} role="grid" aria-label={label} aria-rowcount={rows.length + 1} aria-colcount={columns.length} aria-readonly={onEdit ? undefined : true}
-        className={classes['sheet']} onKeyDown={sheet.onKeyDown} onPaste={sheet.onPaste} onCopy={sheet.onCopy}>
+      <table ref={table} role="grid" aria-label={label} aria-rowcount={rows.length + 1} aria-colcount={columns.length} aria-readonly={onEdit ? undefined : true}
+        className={classes['sheet']} {...keys}>
         <colgroup>
           {columns.map(({ key, width }) => <col key={key} style={width ? { width } : undefined} />)}
         </colgroup>
@@ -51,7 +55,7 @@ export function LineSheet<Row>({ label, rows, rowKey, columns, onEdit, canGrow =
             )}
             {part.map((row, i) => (
               <SheetRow key={rowKey(row, from + i)} row={row} index={from + i} columns={columns} active={active.row === from + i ? active.column : null}
-                draft={active.row === from + i ? draft : null} onPick={sheet.pick} onOpen={sheet.onOpen} onDraft={sheet.setDraft} onEditorKey={sheet.onEditorKey} onLeave={sheet.onLeave} />
+                draft={active.row === from + i ? draft : null} onPick={pick} onOpen={onOpen} onDraft={setDraft} onEditorKey={onEditorKey} onLeave={onLeave} />
             ))}
           </tbody>
         ))}
