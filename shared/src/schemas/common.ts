@@ -32,11 +32,11 @@ export const BusinessDate = z
 export const Instant = z.iso.datetime();
 
 /** Whole cents, at most 999,999,999.99 either way. */
-export const Cents = z.int().min(-99_999_999_999, 'The sum is too large.').max(99_999_999_999, 'The sum is too large.');
+export const Cents = z.int('Enter a sum such as 12,400.50.').min(-99_999_999_999, 'The sum is too large.').max(99_999_999_999, 'The sum is too large.');
 export const PositiveCents = Cents.min(1, 'Must be more than zero.');
 export const NonNegativeCents = Cents.min(0, 'Must not be negative.');
 /** Basis points, 0 to 100 %. */
-export const Rate = z.int().min(0, 'Must not be negative.').max(10_000, 'Must not be more than 100 %.');
+export const Rate = z.int('Enter a percentage such as 7.25.').min(0, 'Must not be negative.').max(10_000, 'Must not be more than 100 %.');
 /** A quantity or unit cost as decimal text with up to 4 places. */
 export const Decimal = z.string().regex(/^-?\d{1,12}(\.\d{1,4})?$/, 'Enter a number with up to 4 places.');
 

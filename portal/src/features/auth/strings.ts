@@ -1,0 +1,16 @@
+export const strings = {
+  title: 'Sign in',
+  email: 'Mail address',
+  emailHint: 'We mail you six digits. There is no password.',
+  send: 'Mail me a code',
+  code: 'The six digits from the mail',
+  enter: 'Sign in',
+  sentTo: 'A code is on its way to',
+  otherAddress: 'Use another address',
+  again: 'Mail another code',
+  name: 'Your name',
+  nameHint: 'As the others on your jobs know you, and as you sign.',
+  demoTitle: 'Try it as',
+  demoHint: 'Invented people on invented jobs. Each signs in as everybody does, by a code, which arrives on the',
+  mailPage: 'mail page',
+} as const;

@@ -1,0 +1,124 @@
+import { Checkbox, NativeSelect, Textarea, TextInput } from '@mantine/core';
+import { formatMoney, formatRate, parseMoney, parseRate } from '@tallypole/shared/money';
+import { useState, type ReactNode } from 'react';
+import { readDate, writtenDate } from '../../lib/dates.ts';
+import classes from './form.module.css';
+import type { FieldProps } from './use-act-form.ts';
+
+interface Common {
+  field: FieldProps;
+  label: string;
+  hint?: ReactNode;
+  autoFocus?: boolean;
+}
+
+type TextFieldProps = Common & { autoComplete?: string; inputMode?: 'text' | 'email' | 'numeric' | 'decimal'; type?: 'text' | 'email'; spellCheck?: boolean; maxLength?: number };
+
+/** One line of text. */
+export const TextField = ({ field, label, hint, ...rest }: TextFieldProps) => <TextInput {...field} {...rest} label={label} description={hint} inputWrapperOrder={ORDER} />;
+
+/** Several lines. */
+export const TextAreaField = ({ field, label, hint, rows = 4 }: Common & { rows?: number }) => (
+  <Textarea {...field} label={label} description={hint} inputWrapperOrder={ORDER} rows={rows} autosize={false} />
+);
+
+export const SelectField = ({ field, label, hint, options }: Common & { options: readonly { value: string; label: string }[] }) => (
+  <NativeSelect {...field} label={label} description={hint} inputWrapperOrder={ORDER} data={[...options]} />
+);
+
+export const CheckboxField = ({ field, label, hint }: Common) => {
+  const { value, onChange, ...rest } = field as unknown as { id: string; value: boolean; onChange: (checked: boolean) => void; error: ReactNode };
+  return <Checkbox {...rest} checked={value} onChange={(event) => onChange(event.currentTarget.checked)} label={label} description={hint} size="md" />;
+};
+
+const ORDER = ['label', 'description', 'error', 'input'] as ('label' | 'description' | 'error' | 'input')[];
+
+interface TypedProps extends Common {
+  /** The value as text, and back; null where the text can't be read. */
+  read: (typed: string) => number | string | null;
+  write: (value: number | string) => string;
+  /** How it was read, for people. */
+  shown: (value: number | string) => string;
+  inputMode: 'text' | 'decimal';
+  section?: string;
+}
+
+/** Takes what people type, keeps it, and says below how it was read. The form holds the value, or the text where it can't be read. */
+function TypedField({ field, label, hint, read, write, shown, inputMode, section, autoFocus }: TypedProps) {
+  const given = field.value as unknown as number | string | null;
+  const [typed, setTyped] = useState(() => (typeof given === 'number' ? write(given) : (given ?? '')));
+  const understood = typed.trim() === '' ? null : read(typed);
+  return (
+    <div>
+      <TextInput
+        id={field.id}
+        error={field.error}
+        label={label}
+        description={hint}
+        inputWrapperOrder={ORDER}
+        inputMode={inputMode}
+        autoComplete="off"
+        value={typed}
+        data-autofocus={autoFocus}
+        leftSection={section}
+        onChange={(event) => {
+          const text = event.currentTarget.value;
+          setTyped(text);
+          const value = text.trim() === '' ? null : read(text);
+          field.onChange(value ?? text);
+        }}
+      />
+      <div className={classes['read']} aria-live="polite">
+        {understood === null ? '' : shown(understood)}
+      </div>
+    </div>
+  );
+}
+
+const orNull = <T,>(work: () => T): T | null => {
+  try {
+    return work();
+  } catch {
+    return null;
+  }
+};
+
+/** A sum: "12,400", "12400.5", "$1,234.56"; the form holds cents. */
+export const MoneyField = (props: Common) => (
+  <TypedField
+    {...props}
+    inputMode="decimal"
+    section="$"
+    read={(typed) => orNull(() => parseMoney(typed))}
+    write={(value) => formatMoney(Number(value)).replace('$', '')}
+    shown={(value) => formatMoney(Number(value))}
+  />
+);
+
+/** A percentage: "7.25"; the form holds basis points. */
+export const PercentField = (props: Common) => (
+  <TypedField
+    {...props}
+    inputMode="decimal"
+    section="%"
+    read={(typed) => orNull(() => parseRate(typed))}
+    write={(value) => formatRate(Number(value)).replace(' %', '')}
+    shown={(value) => formatRate(Number(value))}
+  />
+);
+
+/** A date: "3/14", "March 14, 2027", "2027-03-14"; the form holds YYYY-MM-DD. */
+export const DateField = ({ near, ...props }: Common & { near: string }) => (
+  <TypedField
+    {...props}
+    inputMode="text"
+    read={(typed) => readDate(typed, near)}
+    write={String}
+    shown={(value) => writtenDate(String(value), true)}
+  />
+);
+
+/** A whole number of days or pieces. */
+export const NumberField = (props: Common) => (
+  <TypedField {...props} inputMode="decimal" read={(typed) => (/^-?\d{1,9}$/.test(typed.trim()) ? Number(typed.trim()) : null)} write={String} shown={() => ''} />
+);

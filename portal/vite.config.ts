@@ -1,0 +1,19 @@
+import react from '@vitejs/plugin-react';
+import { defaultClientConditions } from 'vite';
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  plugins: [react()],
+  // @tallypole/shared straight from its TypeScript
+  resolve: { conditions: ['source', ...defaultClientConditions] },
+  ssr: { resolve: { conditions: ['source'] } },
+  build: { target: 'es2022', manifest: true, sourcemap: false },
+  server: { host: '127.0.0.1', port: 4301, strictPort: true, proxy: { '/api': 'http://127.0.0.1:4300' } },
+  test: {
+    environment: 'happy-dom',
+    globals: false,
+    setupFiles: ['./src/testing/setup.ts'],
+    css: { modules: { classNameStrategy: 'non-scoped' } },
+    include: ['src/**/*.spec.{ts,tsx}'],
+  },
+});
