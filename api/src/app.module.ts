@@ -12,6 +12,7 @@ import { DemoModule } from './demo/demo.module.ts';
 import { DrawsModule } from './draws/draws.module.ts';
 import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
+import { HouseModule } from './house/house.module.ts';
 import { HealthController } from './health/health.controller.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
 import { MilestonesModule } from './milestones/milestones.module.ts';
@@ -28,7 +29,7 @@ import { RecordModule } from './record/record.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

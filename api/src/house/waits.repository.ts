@@ -1,0 +1,39 @@
+import { Injectable } from '@nestjs/common';
+import type { Wait } from '@tallypole/shared/schemas/house';
+import type { Tx } from '../common/unit-of-work.ts';
+
+@Injectable()
+export class WaitsRepository {
+  /** What somebody outside or inside the firm is waited for on a job, oldest first, in one statement. */
+  async ofJob(tx: Tx, jobId: string, personId: string): Promise<Wait[]> {
+    const rows = await tx.rows<{ wait: Wait }>(WAITS, [jobId, personId]);
+    return rows.map(({ wait }) => wait);
+  }
+}
+
+const names = (people: string) => `(select coalesce(json_agg(coalesce(p.name, p.email) order by p.name), '[]') from person p where p.id = any(${people}))`;
+const members = (roles: string) => `array(select m.person_id from job_member m where m.job_id = j.id and m.ended_at is null and m.role in (${roles}))`;
+const awaited = (roles: string, but = `'{}'::uuid[]`) => `array(select unnest(${members(roles)}) except select unnest(${but}))`;
+
+const UNPAID = /* sql */ `(d.homeowner_cents - (select coalesce(sum(k.kept_cents), 0)::bigint from payment k where k.draw_id = d.id and k.source = 'homeowner'))`;
+const UNDER_WAY = /* sql */ `exists (select 1 from payment k where k.draw_id = d.id and k.source = 'homeowner' and k.state = 'processing')`;
+
+const WAITS = /* sql */ `
+  with j as (select * from job where id = $1),
+  open as (
+    select 'milestone_to_prove' as kind, m.id, m.name as title, null::bigint as cents, (m.claimed_at at time zone j.time_zone)::date as since, null::date as due_on,
+        ${awaited(`'lender', 'inspector', 'homeowner'`)} as people
+      from milestone m, j where m.job_id = j.id and m.state = 'claimed'
+    union all
+    select 'draw_to_approve', d.id, 'Draw ' || d.number, d.due_cents, (d.submitted_at at time zone j.time_zone)::date, null,
+        ${awaited(`'homeowner'`, 'array(select a.person_id from draw_approval a where a.draw_id = d.id and a.superseded_at is null)')}
+      from draw d, j where d.job_id = j.id and d.state = 'submitted'
+    union all
+    select 'draw_to_pay', d.id, 'Draw ' || d.number, ${UNPAID}, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'homeowner'`)}
+      from draw d, j where d.job_id = j.id and d.state in ('approved', 'part_paid') and ${UNPAID} > 0 and not ${UNDER_WAY}
+    union all
+    select 'draw_to_fund', d.id, 'Draw ' || d.number, d.loan_cents, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'lender'`)}
+      from draw d, j where d.job_id = j.id and d.state in ('approved', 'part_paid') and d.loan_cents > 0 and d.review_state <> 'funded')
+  select json_build_object('kind', o.kind, 'id', o.id, 'title', o.title, 'cents', o.cents, 'since', o.since, 'dueOn', o.due_on,
+    'mine', $2::uuid = any(o.people), 'waitsFor', ${names('o.people')}) as wait
+  from open o where cardinality(o.people) > 0 order by o.since, o.id`;

@@ -1,0 +1,55 @@
+import { afterAll, beforeAll, describe, expect, it } from '@jest/globals';
+import type { House as HouseView } from '@tallypole/shared/schemas/house';
+import { join } from './support/builders.ts';
+import { approvedDraw, lentJob, made, prove, sentDraw } from './support/draw-builders.ts';
+import { House } from './support/house.ts';
+import type { Visitor } from './support/visitor.ts';
+
+describe('the house: the pole and what waits', () => {
+  let house: House;
+  let url: string;
+
+  beforeAll(async () => {
+    house = await House.open();
+    await house.worker();
+    ({ url } = await house.web());
+  });
+  afterAll(() => house.close());
+
+  const see = async (who: Visitor, jobId: string) => made<HouseView>(await who.get(`/jobs/${jobId}/house`));
+
+  it('shows each milestone as it is proven, billed and paid, in building order', async () => {
+    const lent = await lentJob(house, url);
+    const before = await see(lent.ann, lent.job.id);
+    expect(before.pole.milestones.every(({ provenCents, billedCents, paidCents }) => provenCents + billedCents + paidCents === 0)).toBe(true);
+    const draw = await approvedDraw(lent);
+    const after = await see(lent.ann, lent.job.id);
+    const foundation = after.pole.milestones.find(({ name }) => name === 'Foundation');
+    expect(foundation?.provenCents).toBe(foundation?.scheduledCents);
+    expect(foundation?.billedCents).toBe(foundation?.scheduledCents);
+    expect(foundation?.paidCents).toBe(0);
+    const total = after.pole.milestones.reduce((a, m) => a + m.scheduledCents, after.pole.general.scheduledCents);
+    expect(total).toBe(lent.job.contractSumTodayCents);
+    const booked = made<{ id: string }>(await lent.principal.get(`/jobs/${lent.job.id}/draws/${draw.id}`));
+    expect(booked.id).toBe(draw.id);
+  });
+
+  it('names who is waited for, and tells each person what is theirs', async () => {
+    const lent = await lentJob(house, url);
+    await prove(lent, 'Foundation');
+    const draw = await sentDraw(lent);
+    const ann = await see(lent.ann, lent.job.id);
+    expect(ann.waits).toEqual([expect.objectContaining({ kind: 'draw_to_approve', id: draw.id, mine: true })]);
+    const firm = await see(lent.principal, lent.job.id);
+    expect(firm.waits).toEqual([expect.objectContaining({ kind: 'draw_to_approve', mine: false })]);
+    expect(firm.waits[0]?.waitsFor.length).toBe(2);
+  });
+
+  it('shows an inspector how high the house stands, and no price', async () => {
+    const lent = await lentJob(house, url);
+    const inspector = await join(lent.principal, lent.job.id, 'inspector');
+    const { pole } = await see(inspector, lent.job.id);
+    expect(pole.prices).toBe(false);
+    expect(pole.milestones.reduce((a, m) => a + m.scheduledCents, pole.general.scheduledCents)).toBeLessThanOrEqual(10_003);
+  });
+});
