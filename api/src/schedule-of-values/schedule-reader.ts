@@ -33,6 +33,8 @@ export async function readSchedule(file: ScheduleFile, contract: ContractFacts):
     sheet: sheet.name,
     sheets: sheets.flatMap(({ name }) => (name === null ? [] : [name])),
     ...reading,
+    startOn: contract.startOn,
+    completeBy: contract.completeBy,
     milestones: proposeMilestones(reading.lines, contract.startOn, contract.completeBy),
   };
 }

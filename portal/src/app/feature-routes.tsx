@@ -3,5 +3,12 @@ import type { RouteObject } from 'react-router-dom';
 /** Pages of the features, each loaded when it is opened. `job` paths stand below /jobs/:jobId, `wide` ones at the top. */
 export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
   wide: [],
-  job: [{ index: true, lazy: () => import('../features/jobs/pages/house-page.tsx') }],
+  job: [
+    { index: true, lazy: () => import('../features/jobs/pages/house-page.tsx') },
+    { path: 'schedule', lazy: () => import('../features/schedule/pages/schedule-page.tsx') },
+    { path: 'schedule/import', lazy: () => import('../features/schedule/pages/import-page.tsx') },
+    { path: 'milestones/:milestoneId', lazy: () => import('../features/milestones/pages/milestone-page.tsx') },
+    { path: 'site', lazy: () => import('../features/site/pages/site-page.tsx') },
+    { path: 'site/:milestoneId', lazy: () => import('../features/site/pages/capture-page.tsx') },
+  ],
 };

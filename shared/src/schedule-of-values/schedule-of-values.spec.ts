@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { checkDrafts, proposeMilestones, readGrid, readScheduled, sumProblem, type DraftLine, type GridRow } from './index.ts';
+import { checkDrafts, phasesOf, proposeMilestones, readGrid, readScheduled, scheduleSum, sumProblem, type DraftLine, type GridRow } from './index.ts';
 
 const grid = (...rows: (string | { error: string })[][]): GridRow[] => rows.map((cells, i) => ({ row: i + 1, cells }));
 const HEADER = ['No.', 'Phase', 'Description', 'Scheduled value'];
@@ -94,5 +94,18 @@ describe('proposing milestones', () => {
 
   it('spreads them evenly when no value can be read', () => {
     expect(proposeMilestones([draft({ milestone: 'A', scheduled: '?' }), draft({ milestone: 'B', scheduled: '?' })], '2027-01-01', '2027-01-11').map(({ plannedOn }) => plannedOn)).toEqual(['2027-01-06', '2027-01-11']);
+  });
+});
+
+describe('the phases of a schedule', () => {
+  it('add up line by line to the schedule', () => {
+    const line = (id: string, phase: string, scheduledCents: number) => ({ id, number: id, phase, description: `Line ${id}`, scheduledCents });
+    const phases = phasesOf([line('1', 'Frame', 1_050), line('2', 'Finish', 200), line('3', 'Frame', 50)]);
+    expect(phases.map(({ name, lines, sum }) => [name, lines.map(({ id }) => id), sum.result])).toEqual([
+      ['Frame', ['1', '3'], { kind: 'money', cents: 1_100 }],
+      ['Finish', ['2'], { kind: 'money', cents: 200 }],
+    ]);
+    expect(scheduleSum(phases)).toMatchObject({ result: { kind: 'money', cents: 1_300 }, inputs: [{ label: 'Frame' }, { label: 'Finish' }] });
+    expect(phases[0]?.sum.inputs[0]).toMatchObject({ label: '1 Line 1', origin: { record: 'line', id: '1' } });
   });
 });

@@ -22,6 +22,9 @@ export const SchedulePreview = z.object({
   sumCents: z.int(),
   contractSumCents: z.int(),
   differenceCents: z.int(),
+  /** The contract time, over which milestones are proposed. */
+  startOn: BusinessDate,
+  completeBy: BusinessDate,
   milestones: z.array(z.object({ name: text, plannedOn: BusinessDate })),
 });
 

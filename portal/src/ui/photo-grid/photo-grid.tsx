@@ -1,0 +1,52 @@
+import type { Photo } from '@tallypole/shared/schemas/photos';
+import { useState } from 'react';
+import { writtenInstant } from '../../lib/dates.ts';
+import { photoUrl } from '../../lib/milestones.ts';
+import { PhotoViewer } from './photo-viewer.tsx';
+import classes from './photo-grid.module.css';
+
+export interface PhotoGridProps {
+  jobId: string;
+  photos: readonly Photo[];
+  /** What is on them, for who doesn't see them: the milestone's name. */
+  subject: string;
+  timeZone: string;
+}
+
+/** Photos as a grid; one opens with what is known about it. Those that are still being read or can't be say so in their place. */
+export function PhotoGrid({ jobId, photos, subject, timeZone }: PhotoGridProps) {
+  const [open, setOpen] = useState<number | null>(null);
+  const shown = open === null ? undefined : photos[open];
+  return (
+    <>
+      <ul className={classes['grid']}>
+        {photos.map((photo, i) => (
+          <li key={photo.id}>
+            <button type="button" className={classes['tile']} onClick={() => setOpen(i)}>
+              {photo.state === 'ready' ? (
+                <img src={photoUrl(jobId, photo.id, 'small')} alt={altOf(photo, subject, timeZone)} loading="lazy" decoding="async" />
+              ) : (
+                <span className={classes['blank']}>{photo.state === 'stored' ? 'Being read …' : 'Cannot be shown'}</span>
+              )}
+            </button>
+          </li>
+        ))}
+      </ul>
+      {shown ? (
+        <PhotoViewer
+          jobId={jobId}
+          photo={shown}
+          alt={altOf(shown, subject, timeZone)}
+          title={`${subject}, photo ${(open ?? 0) + 1} of ${photos.length}`}
+          timeZone={timeZone}
+          onClose={() => setOpen(null)}
+          onMove={(step) => setOpen((at) => Math.min(photos.length - 1, Math.max(0, (at ?? 0) + step)))}
+        />
+      ) : null}
+    </>
+  );
+}
+
+function altOf({ note, takenAt, addedAt }: Photo, subject: string, timeZone: string): string {
+  return `${note || subject}, ${takenAt ? 'taken' : 'added'} ${writtenInstant(takenAt ?? addedAt, timeZone)}`;
+}
