@@ -1,5 +1,5 @@
 import { Injectable } from '@nestjs/common';
-import type { House } from '@tallypole/shared/schemas/house';
+import type { AllWaits, House } from '@tallypole/shared/schemas/house';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { Clock } from '../common/clock.ts';
 import { Problem } from '../common/problem.ts';
@@ -25,7 +25,22 @@ export class HouseService {
       const prices = may(roles, 'money.read');
       const waits = await this.waits.ofJob(tx, jobId, actor.personId);
       const shown = waits.filter((wait) => prices || wait.kind === 'milestone_to_prove').map((wait) => (prices ? wait : { ...wait, cents: null }));
-      return { pole: poleOf(facts, this.clock.today(facts.timeZone), prices), waits: shown };
+      const next = facts.milestones.find(({ state }) => state !== 'proven');
+      return {
+        pole: poleOf(facts, this.clock.today(facts.timeZone), prices),
+        next: next ? { id: next.id, name: next.name, on: next.plannedOn } : null,
+        waits: shown,
+      };
+    });
+  }
+
+  /** What waits on every job that somebody is on, with sums only where their role may see them. */
+  waiting(actor: Actor): Promise<AllWaits> {
+    return this.work.read(actor, async (tx) => {
+      const items = await this.waits.ofPerson(tx, actor.personId);
+      const roles = await this.waits.roles(tx, [...new Set(items.map(({ jobId }) => jobId))]);
+      const mayKnow = (jobId: string) => may(roles.get(jobId) ?? [], 'money.read');
+      return { items: items.filter(({ jobId, kind }) => mayKnow(jobId) || kind === 'milestone_to_prove').map((item) => (mayKnow(item.jobId) ? item : { ...item, cents: null })) };
     });
   }
 }

@@ -1,13 +1,26 @@
 import { Injectable } from '@nestjs/common';
-import type { Wait } from '@tallypole/shared/schemas/house';
+import type { Role } from '@tallypole/shared/schemas/roles';
+import type { AllWaits, Wait } from '@tallypole/shared/schemas/house';
 import type { Tx } from '../common/unit-of-work.ts';
 
 @Injectable()
 export class WaitsRepository {
   /** What somebody outside or inside the firm is waited for on a job, oldest first, in one statement. */
   async ofJob(tx: Tx, jobId: string, personId: string): Promise<Wait[]> {
-    const rows = await tx.rows<{ wait: Wait }>(WAITS, [jobId, personId]);
+    const rows = await tx.rows<{ wait: Wait }>(`${WAITS} limit 200`, [jobId, personId]);
     return rows.map(({ wait }) => wait);
+  }
+
+  /** The same on every job that somebody may see. */
+  async ofPerson(tx: Tx, personId: string): Promise<AllWaits['items']> {
+    const rows = await tx.rows<{ wait: Wait; job_id: string; job_name: string }>(`${WAITS} limit 200`, [null, personId]);
+    return rows.map(({ wait, job_id: jobId, job_name: jobName }) => ({ ...wait, jobId, jobName }));
+  }
+
+  /** What somebody is on each of these jobs. */
+  async roles(tx: Tx, jobIds: readonly string[]): Promise<Map<string, Role[]>> {
+    const rows = await tx.rows<{ id: string; roles: Role[] }>('select id, app.my_roles(id) as roles from unnest($1::uuid[]) as id', [jobIds]);
+    return new Map(rows.map(({ id, roles }) => [id, roles]));
   }
 }
 
@@ -19,21 +32,21 @@ const UNPAID = /* sql */ `(d.homeowner_cents - (select coalesce(sum(k.kept_cents
 const UNDER_WAY = /* sql */ `exists (select 1 from payment k where k.draw_id = d.id and k.source = 'homeowner' and k.state = 'processing')`;
 
 const WAITS = /* sql */ `
-  with j as (select * from job where id = $1),
+  with j as (select * from job where $1::uuid is null or id = $1),
   open as (
     select 'milestone_to_prove' as kind, m.id, m.name as title, null::bigint as cents, (m.claimed_at at time zone j.time_zone)::date as since, null::date as due_on,
-        ${awaited(`'lender', 'inspector', 'homeowner'`)} as people
+        ${awaited(`'lender', 'inspector', 'homeowner'`)} as people, j.id as job_id, j.name as job_name
       from milestone m, j where m.job_id = j.id and m.state = 'claimed'
     union all
     select 'draw_to_approve', d.id, 'Draw ' || d.number, d.due_cents, (d.submitted_at at time zone j.time_zone)::date, null,
-        ${awaited(`'homeowner'`, 'array(select a.person_id from draw_approval a where a.draw_id = d.id and a.superseded_at is null)')}
+        ${awaited(`'homeowner'`, 'array(select a.person_id from draw_approval a where a.draw_id = d.id and a.superseded_at is null)')}, j.id, j.name
       from draw d, j where d.job_id = j.id and d.state = 'submitted'
     union all
-    select 'draw_to_pay', d.id, 'Draw ' || d.number, ${UNPAID}, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'homeowner'`)}
+    select 'draw_to_pay', d.id, 'Draw ' || d.number, ${UNPAID}, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'homeowner'`)}, j.id, j.name
       from draw d, j where d.job_id = j.id and d.state in ('approved', 'part_paid') and ${UNPAID} > 0 and not ${UNDER_WAY}
     union all
-    select 'draw_to_fund', d.id, 'Draw ' || d.number, d.loan_cents, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'lender'`)}
+    select 'draw_to_fund', d.id, 'Draw ' || d.number, d.loan_cents, (d.approved_at at time zone j.time_zone)::date, d.due_on, ${awaited(`'lender'`)}, j.id, j.name
       from draw d, j where d.job_id = j.id and d.state in ('approved', 'part_paid') and d.loan_cents > 0 and d.review_state <> 'funded')
   select json_build_object('kind', o.kind, 'id', o.id, 'title', o.title, 'cents', o.cents, 'since', o.since, 'dueOn', o.due_on,
-    'mine', $2::uuid = any(o.people), 'waitsFor', ${names('o.people')}) as wait
+    'mine', $2::uuid = any(o.people), 'waitsFor', ${names('o.people')}) as wait, o.job_id, o.job_name
   from open o where cardinality(o.people) > 0 order by o.since, o.id`;

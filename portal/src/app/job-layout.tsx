@@ -1,6 +1,8 @@
+import { useQuery } from '@tanstack/react-query';
 import { may, type Permission } from '@tallypole/shared/schemas/permissions';
 import { Suspense } from 'react';
 import { NavLink, Outlet } from 'react-router-dom';
+import { houseQuery } from '../lib/house.ts';
 import { useJob } from '../lib/job.ts';
 import { LoadingState } from '../ui/page.tsx';
 import { JobPole } from './job-pole.tsx';
@@ -9,6 +11,8 @@ import classes from './shell.module.css';
 /** The job-wide pages, as words; everything else hangs on a band of the pole. */
 const PAGES: readonly { to: string; label: string; permission: Permission }[] = [
   { to: '.', label: 'House', permission: 'job.read' },
+  { to: 'site', label: 'Site', permission: 'milestone.claim' },
+  { to: 'schedule', label: 'Schedule', permission: 'schedule_of_values.read' },
   { to: 'changes', label: 'Changes', permission: 'change.read' },
   { to: 'draws', label: 'Draws', permission: 'draw.read' },
   { to: 'money', label: 'Money', permission: 'money.read' },
@@ -27,6 +31,7 @@ function JobFrame() {
     <>
       <nav className={`${classes['nav'] ?? ''} no-print`} aria-label={job.name}>
         <span className={classes['place']}>{job.name}</span>
+        <Waiting jobId={job.id} />
         {PAGES.filter(({ permission }) => may(job.roles, permission)).map(({ to, label }) => (
           <NavLink key={to} to={to} end={to === '.'} relative="route">
             {label}
@@ -42,5 +47,17 @@ function JobFrame() {
         </main>
       </div>
     </>
+  );
+}
+
+/** How much is open, in one line. */
+function Waiting({ jobId }: { jobId: string }) {
+  const { data } = useQuery(houseQuery(jobId));
+  if (!data) return null;
+  const mine = data.waits.filter((wait) => wait.mine).length;
+  return (
+    <span className="quiet">
+      waiting for you: {mine} · waiting for others: {data.waits.length - mine}
+    </span>
   );
 }

@@ -5,11 +5,15 @@ import { JobLayout } from './job-layout.tsx';
 import { NotFoundPage } from './not-found-page.tsx';
 import { SignedIn } from './signed-in.tsx';
 
+/** While the first page's code is on its way. */
+const Nothing = () => null;
+
 /** Sign-in stands alone; everything else needs a person; a job's pages stand beside its pole. */
 export const router = createBrowserRouter([
-  { path: '/sign-in', lazy: () => import('../features/auth/pages/sign-in-page.tsx'), errorElement: <ErrorPage /> },
+  { path: '/sign-in', HydrateFallback: Nothing, lazy: () => import('../features/auth/pages/sign-in-page.tsx'), errorElement: <ErrorPage /> },
   {
     path: '/',
+    HydrateFallback: Nothing,
     element: <SignedIn />,
     errorElement: <ErrorPage />,
     children: [

@@ -13,7 +13,7 @@ export const theme = createTheme({
   cursorType: 'pointer',
   respectReducedMotion: true,
   components: {
-    Button: Button.extend({ defaultProps: { size: 'md' }, styles: { root: { minHeight: 44, fontWeight: 600, paddingInline: 18 } } }),
+    Button: Button.extend({ defaultProps: { size: 'md', autoContrast: false }, styles: { root: { minHeight: 44, fontWeight: 600, paddingInline: 18 } } }),
     Input: Input.extend({ defaultProps: { size: 'md' }, styles: { input: { minHeight: 44, backgroundColor: 'var(--sheet)', color: 'var(--graphite)' } } }),
   },
 });

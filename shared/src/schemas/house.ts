@@ -36,7 +36,14 @@ export const Wait = z.object({
   waitsFor: z.array(z.string()),
 });
 
-export const House = z.object({ pole: Pole, waits: z.array(Wait) });
+/** The next milestone that isn't proven, and when it is planned or forecast. */
+export const NextMilestone = z.object({ id: Id, name: z.string(), on: BusinessDate.nullable() });
+
+export const House = z.object({ pole: Pole, next: NextMilestone.nullable(), waits: z.array(Wait) });
+
+/** What waits on all of somebody's jobs, oldest first. */
+export const AllWaits = z.object({ items: z.array(Wait.extend({ jobId: Id, jobName: z.string() })) });
 
 export type House = z.infer<typeof House>;
 export type Wait = z.infer<typeof Wait>;
+export type AllWaits = z.infer<typeof AllWaits>;

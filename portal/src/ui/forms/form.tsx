@@ -58,6 +58,7 @@ function ErrorSummary<Values extends object>({ act }: { act: ActForm<Values> }) 
                   document.getElementById(fieldId(act.name, path))?.focus();
                 }}
               >
+                {labelOf(fieldId(act.name, path))}
                 {message}
               </a>
             </li>
@@ -66,6 +67,12 @@ function ErrorSummary<Values extends object>({ act }: { act: ActForm<Values> }) 
       ) : null}
     </div>
   );
+}
+
+/** "City: ", read from the page, since a message alone doesn't say which field it is about. */
+function labelOf(id: string): string {
+  const label = document.querySelector(`label[for="${id}"]`)?.textContent;
+  return label ? `${label}: ` : '';
 }
 
 /** Fields that belong together under one heading. */

@@ -1,5 +1,5 @@
 import { Button } from '@mantine/core';
-import { useInfiniteQuery } from '@tanstack/react-query';
+import { useInfiniteQuery, useQuery } from '@tanstack/react-query';
 import type { Me } from '@tallypole/shared/schemas/auth';
 import type { JobRow } from '@tallypole/shared/schemas/jobs';
 import { Link } from 'react-router-dom';
@@ -8,8 +8,10 @@ import { useMe } from '../../../lib/me.ts';
 import { DataTable } from '../../../ui/data-table.tsx';
 import { LinkButton } from '../../../ui/link-button.tsx';
 import { Money } from '../../../ui/money.tsx';
-import { EmptyState, FailureState, LoadingState, PageHead } from '../../../ui/page.tsx';
+import { EmptyState, FailureState, LoadingState, PageHead, Section } from '../../../ui/page.tsx';
+import { WaitRow } from '../../../ui/waits.tsx';
 import { jobsQuery } from '../api/get-jobs.ts';
+import { waitsQuery } from '../api/get-waits.ts';
 import { OpenInvitations } from '../components/open-invitations.tsx';
 
 const columns = [
@@ -29,6 +31,7 @@ export function Component() {
     <main style={{ maxWidth: 1200, margin: '0 auto', padding: '32px clamp(16px, 3vw, 40px)' }} id="main">
       <PageHead title="Your jobs">{firm ? <LinkButtonRow firmId={firm.id} /> : null}</PageHead>
       <OpenInvitations invitations={me.invitations} />
+      <Waiting />
       {isPending ? <LoadingState /> : error ? <FailureState error={error} onRetry={() => void refetch()} /> : jobs.length === 0 ? <NoJobs me={me} /> : <DataTable caption="Your jobs" columns={columns} rows={jobs} rowKey={(job) => job.id} />}
       {hasNextPage ? (
         <Button variant="subtle" onClick={() => void fetchNextPage()}>
@@ -36,6 +39,28 @@ export function Component() {
         </Button>
       ) : null}
     </main>
+  );
+}
+
+/** Who is waited for, oldest first: what is mine, then what others owe an answer to. */
+function Waiting() {
+  const { data } = useQuery(waitsQuery);
+  if (!data || data.items.length === 0) return null;
+  const groups = [
+    { title: 'Waiting for you', items: data.items.filter(({ mine }) => mine) },
+    { title: 'Waiting for others', items: data.items.filter(({ mine }) => !mine) },
+  ].filter(({ items }) => items.length > 0);
+  return (
+    <>
+      {groups.map(({ title, items }) => (
+        <Section key={title} title={title} ruled={false}>
+          {items.map((wait) => (
+            <WaitRow key={`${wait.kind} ${wait.id}`} wait={wait} jobId={wait.jobId} jobName={wait.jobName} />
+          ))}
+        </Section>
+      ))}
+      <h2 style={{ margin: '36px 0 12px' }}>All jobs</h2>
+    </>
   );
 }
 
