@@ -1,6 +1,7 @@
 import { Body, Controller, Get, Inject, Param, Post, Query, Req, Res } from '@nestjs/common';
 import { ApiBody, ApiConsumes, ApiCreatedResponse, ApiOkResponse, ApiTags } from '@nestjs/swagger';
 import type { Request, Response } from 'express';
+import { z } from 'zod';
 import { Id } from '@tallypole/shared/schemas/common';
 import * as S from '@tallypole/shared/schemas/photos';
 import { answer } from '../common/answer.ts';
@@ -12,6 +13,8 @@ import { sendStored } from '../files/send-stored.ts';
 import { uploadBody } from '../files/upload-body.ts';
 import { PhotosService } from './photos.service.ts';
 
+// an unknown size is not found, like an unknown photo
+const SizeName = z.string().max(60).meta({ enum: Object.keys(S.photoSizes) });
 const Job = () => Param('jobId', { schema: Id });
 const Photo = () => Param('photoId', { schema: Id });
 
@@ -41,7 +44,7 @@ export class PhotosController {
   @Get('photos/:photoId/:size') @Route('photo.read', 'read') @ApiOkResponse({ description: 'The picture in this size, without its metadata.' })
   async picture(
     @CurrentActor() actor: Actor, @Job() jobId: string, @Photo() photoId: string,
-    @Param('size', { schema: S.PhotoSize }) size: S.PhotoSize, @Res() response: Response,
+    @Param('size', { schema: SizeName }) size: string, @Res() response: Response,
   ): Promise<void> {
     const { key, bytes } = await this.photos.size(actor, jobId, photoId, size);
     await sendStored(response, this.storage, { storageKey: key, mediaType: 'image/jpeg', bytes });

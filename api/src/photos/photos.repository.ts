@@ -51,7 +51,7 @@ export class PhotosRepository {
     return rows.map(({ photo }) => photo);
   }
 
-  async size(tx: Tx, jobId: string, photoId: string, size: PhotoSize): Promise<StoredSize | undefined> {
+  async size(tx: Tx, jobId: string, photoId: string, size: string): Promise<StoredSize | undefined> {
     const row = await tx.one<{ sizes: StoredSize[] }>('select sizes from photo where job_id = $1 and id = $2', [jobId, photoId]);
     return row?.sizes.find((stored) => stored.size === size);
   }

@@ -1,7 +1,7 @@
 import { Injectable } from '@nestjs/common';
 import type { Request, Response } from 'express';
 import { may } from '@tallypole/shared/schemas/permissions';
-import { AddPhoto, MOST_PHOTO_BYTES, type Photo, type PhotoList, type PhotoQuery, type PhotoSize, type Site, type SiteLocation } from '@tallypole/shared/schemas/photos';
+import { AddPhoto, MOST_PHOTO_BYTES, type Photo, type PhotoList, type PhotoQuery, type Site, type SiteLocation } from '@tallypole/shared/schemas/photos';
 import { requireOnJob } from '../common/access.ts';
 import { CommandRunner, type Answered } from '../common/command-runner.ts';
 import { Clock } from '../common/clock.ts';
@@ -53,7 +53,7 @@ export class PhotosService {
     });
   }
 
-  size(actor: Actor, jobId: string, photoId: string, size: PhotoSize): Promise<StoredSize> {
+  size(actor: Actor, jobId: string, photoId: string, size: string): Promise<StoredSize> {
     return this.work.readJob(actor, jobId, 'photo.read', async (tx) => {
       const stored = await this.repository.size(tx, jobId, photoId, size);
       if (!stored) throw new Problem('not_found');

@@ -13,6 +13,7 @@ const PAGES: readonly { to: string; label: string; permission: Permission }[] = 
   { to: '.', label: 'House', permission: 'job.read' },
   { to: 'site', label: 'Site', permission: 'milestone.claim' },
   { to: 'schedule', label: 'Schedule', permission: 'schedule_of_values.read' },
+  { to: 'site', label: 'Site', permission: 'photo.add' },
   { to: 'changes', label: 'Changes', permission: 'change.read' },
   { to: 'draws', label: 'Draws', permission: 'draw.read' },
   { to: 'money', label: 'Money', permission: 'money.read' },
@@ -39,7 +40,9 @@ function JobFrame() {
         ))}
       </nav>
       <div className={`${classes['body'] ?? ''} ${classes['job'] ?? ''}`}>
-        <JobPole />
+        <aside aria-label="The pole" className="no-print">
+          <JobPole />
+        </aside>
         <main id="main" tabIndex={-1}>
           <Suspense fallback={<LoadingState />}>
             <Outlet />

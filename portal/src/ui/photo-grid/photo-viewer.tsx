@@ -1,4 +1,4 @@
-import { Button, Modal } from '@mantine/core';
+import { Button, CloseButton, Modal } from '@mantine/core';
 import type { Photo } from '@tallypole/shared/schemas/photos';
 import type { KeyboardEvent, ReactNode } from 'react';
 import { writtenInstant } from '../../lib/dates.ts';
@@ -22,8 +22,12 @@ export function PhotoViewer({ jobId, photo, alt, title, timeZone, onClose, onMov
     if (event.key === 'ArrowLeft') onMove(-1);
   };
   return (
-    <Modal opened onClose={onClose} title={title} size="xl" onKeyDown={onKeyDown} closeButtonProps={{ 'aria-label': 'Close' }}>
+    <Modal opened onClose={onClose} withCloseButton={false} size="xl" onKeyDown={onKeyDown} aria-label={title}>
       <div className={classes['viewer']}>
+        <div className={classes['moves']}>
+          <h2>{title}</h2>
+          <CloseButton size="lg" aria-label="Close" onClick={onClose} />
+        </div>
         {photo.state === 'ready' ? (
           <img key={photo.id} src={photoUrl(jobId, photo.id, 'large')} alt={alt} width={photo.width ?? undefined} height={photo.height ?? undefined} />
         ) : (

@@ -34,8 +34,10 @@ export function Component() {
         <div><StateTag meaning={MEANING[data.state]}>{milestoneStateNames[data.state]}</StateTag></div>
       </PageHead>
       <MilestoneFacts milestone={data} timeZone={job.timeZone} />
+      {/* whoever looks sees the photos before saying what they saw */}
+      {may(job.roles, 'milestone.prove') ? <Photos job={job} milestone={data} /> : null}
       <Acts key={data.version} job={job} milestone={data} />
-      <Photos job={job} milestone={data} />
+      {may(job.roles, 'milestone.prove') ? null : <Photos job={job} milestone={data} />}
       <Section title={strings.looks}>
         <InspectionList inspections={data.inspections} />
         {data.state === 'proven' && may(job.roles, 'milestone.reopen') ? <ReopenForm key={data.version} job={job} milestone={data} /> : null}

@@ -21,7 +21,7 @@ function QueueItem({ photo, queue }: { photo: QueuedPhoto; queue: PhotoQueue }) 
   const { id, file, preview, state, percent, message } = photo;
   return (
     <li data-state={state}>
-      <img src={preview} alt="" width={64} height={48} />
+      <img src={preview} alt="" width={64} height={48} onError={(event) => event.currentTarget.removeAttribute('src')} />
       <div className={classes['about']}>
         <div className={classes['name']}>{photo.note || file.name}</div>
         <div className="quiet">

@@ -11,6 +11,9 @@ import classes from '../components/site.module.css';
 import { strings } from '../strings.ts';
 import { usePhotoQueue } from '../use-photo-queue.ts';
 
+// for wet gloves
+const LARGE = { minHeight: 68, fontSize: 18 };
+
 /** The camera for one milestone, and what becomes of the photos. */
 export function Component() {
   const job = useJob();
@@ -32,10 +35,10 @@ export function Component() {
       <PageHead title={data.name} />
       <div className={classes['buttons']}>
         <FileButton key={`camera ${picked}`} onChange={take} accept="image/*" capture="environment" multiple>
-          {(props) => <Button {...props} fullWidth>{strings.camera}</Button>}
+          {(props) => <Button {...props} fullWidth style={LARGE}>{strings.camera}</Button>}
         </FileButton>
         <FileButton key={`library ${picked}`} onChange={take} accept="image/*" multiple>
-          {(props) => <Button {...props} fullWidth variant="outline">{strings.library}</Button>}
+          {(props) => <Button {...props} fullWidth variant="outline" style={LARGE}>{strings.library}</Button>}
         </FileButton>
         <TextInput label={strings.note} description={strings.noteHint} value={note} maxLength={1_000} onChange={(event) => setNote(event.currentTarget.value)} />
       </div>
