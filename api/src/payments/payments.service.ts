@@ -123,10 +123,10 @@ export class PaymentsService {
 
   private async checkCanTake(tx: Tx, jobId: string, cents: number): Promise<void> {
     if (!(await this.repository.takesPayments(tx, jobId))) {
-      throw new Problem('payments_unavailable', { detail: 'Your builder does not take payments here yet. Pay by check or wire, or ask them to finish their set-up. Nothing was charged.' });
+      throw new Problem('wrong_state', { detail: 'Your builder does not take payments here yet. Pay by check or wire, or ask them to finish their set-up. Nothing was charged.' });
     }
     if (cents < LEAST_CENTS || cents > MOST_CENTS) {
-      throw new Problem('payments_unavailable', { detail: `A payment here must lie between ${formatMoney(LEAST_CENTS)} and ${formatMoney(MOST_CENTS)}. Pay by check or wire. Nothing was charged.` });
+      throw new Problem('wrong_state', { detail: `A payment here must lie between ${formatMoney(LEAST_CENTS)} and ${formatMoney(MOST_CENTS)}. Pay by check or wire. Nothing was charged.` });
     }
   }
 

@@ -10,11 +10,13 @@ const EVERY_MS = 2_000;
 export class DeadWorkerSweep {
   readonly events = new EventEmitter();
   private readonly held: Promise<unknown>;
+  private own = '';
   private timer: NodeJS.Timeout | undefined;
 
   private constructor(private readonly client: pg.Client) {
     this.held = new Promise((done, fail) => {
       this.events.once('pool:create', ({ workerPool }: { workerPool: { id: string } }) => {
+        this.own = workerPool.id;
         client.query('select pg_advisory_lock(hashtext($1))', [workerPool.id]).then(done, fail);
       });
     });
@@ -39,8 +41,12 @@ export class DeadWorkerSweep {
   }
 
   private async sweep(): Promise<void> {
-    await this.client.query(`select graphile_worker.force_unlock_workers(array_agg(w)) from (
-      select distinct locked_by as w from graphile_worker.jobs where locked_at < now() - interval '2 seconds') x
-      where pg_try_advisory_xact_lock(hashtext(w)) having count(*) > 0`);
+    // this session could take its own lock again, which would free the jobs that run here at this moment
+    await this.client.query(
+      `select graphile_worker.force_unlock_workers(array_agg(w)) from (
+        select distinct locked_by as w from graphile_worker.jobs where locked_at < now() - interval '2 seconds' and locked_by <> $1) x
+        where pg_try_advisory_xact_lock(hashtext(w)) having count(*) > 0`,
+      [this.own],
+    );
   }
 }

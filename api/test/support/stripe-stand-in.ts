@@ -48,8 +48,9 @@ export class StripeStandIn {
   }
 
   async control<T = unknown>(where: string, wish: object = {}, method = 'POST'): Promise<T> {
-    const body = method === 'GET' ? {} : { headers: { 'content-type': 'application/json' }, body: JSON.stringify(wish) };
-    const answer = await fetch(`${this.url}/_control/${where}`, { method, ...body });
+    // a kept connection could be one to a stand-in that was stopped since
+    const headers = { connection: 'close', ...(method === 'GET' ? {} : { 'content-type': 'application/json' }) };
+    const answer = await fetch(`${this.url}/_control/${where}`, { method, headers, ...(method === 'GET' ? {} : { body: JSON.stringify(wish) }) });
     const found = (await answer.json()) as T & { error?: { message: string } };
     if (!answer.ok) throw new Error(`${where}: ${found.error?.message ?? answer.status}`);
     return found;
@@ -58,6 +59,14 @@ export class StripeStandIn {
   /** Asks the API as the platform does, on a connected account. */
   async api<T>(where: string, account: string): Promise<T> {
     const answer = await fetch(`${this.url}/v1/${where}`, { headers: { authorization: 'Bearer sk_test_demo_house', 'stripe-account': account } });
+    return (await answer.json()) as T;
+  }
+
+  /** Does something on a connected account, as its owner would in the payment service's own pages. */
+  async send<T>(where: string, account: string, fields: Record<string, string>): Promise<T> {
+    const headers = { authorization: 'Bearer sk_test_demo_house', 'stripe-account': account, 'content-type': 'application/x-www-form-urlencoded' };
+    const answer = await fetch(`${this.url}/v1/${where}`, { method: 'POST', headers, body: new URLSearchParams(fields) });
+    if (!answer.ok) throw new Error(await answer.text());
     return (await answer.json()) as T;
   }
 
