@@ -84,10 +84,12 @@ describe('the schedule of values', () => {
     const seen = (await preview(jobId, 's.csv', sample('schedule-quarry.csv'))).body as SchedulePreview;
     expect((await principal.post(`/jobs/${jobId}/schedule`, importable(seen))).status).toBe(201);
     expect((await principal.post(`/jobs/${jobId}/schedule`, importable(seen))).status).toBe(201);
+    expect(((await principal.get(`/jobs/${jobId}/schedule`)).body as ScheduleOfValues).replaceable).toBe(true);
     await house.sql(`update milestone set state = 'under_way' where job_id = $1 and position = 1`, [jobId]);
     const late = await principal.post(`/jobs/${jobId}/schedule`, importable(seen));
     expect([late.status, problemOf(late.body).code]).toEqual([409, 'wrong_state']);
-    expect(((await principal.get(`/jobs/${jobId}/schedule`)).body as ScheduleOfValues).lines).toHaveLength(50);
+    const kept = (await principal.get(`/jobs/${jobId}/schedule`)).body as ScheduleOfValues;
+    expect([kept.lines.length, kept.replaceable]).toEqual([50, false]);
   });
 
   it('refuses lines that point at no milestone of theirs and milestones without a line', async () => {

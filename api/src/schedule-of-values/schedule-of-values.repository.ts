@@ -5,13 +5,15 @@ import type { ContractFacts } from './schedule-reader.ts';
 
 export interface LockedJob extends ContractFacts {
   firmId: string;
-  lastDrawNumber: number;
+  /** Whether nothing rests on the schedule yet. */
+  replaceable: boolean;
 }
 
 export interface ScheduleRows {
   lines: ScheduleLine[];
   milestones: { id: string; name: string }[];
   importedAt: string | null;
+  replaceable: boolean;
   contractSumCents: number;
   changesApprovedCents: number;
 }
@@ -23,22 +25,12 @@ export class ScheduleOfValuesRepository {
   }
 
   async lockJob(tx: Tx, jobId: string): Promise<LockedJob | undefined> {
+    await tx.rows('select id from job where id = $1 for no key update', [jobId]);
     return await tx.one<LockedJob>(
-      `select firm_id as "firmId", contract_sum_cents as "contractSumCents", start_on as "startOn", complete_by as "completeBy",
-         last_draw_number as "lastDrawNumber" from job where id = $1 for no key update`,
+      `select j.firm_id as "firmId", j.contract_sum_cents as "contractSumCents", j.start_on as "startOn", j.complete_by as "completeBy",
+         ${REPLACEABLE} as replaceable from job j where j.id = $1`,
       [jobId],
     );
-  }
-
-  /** Whether something stands on the schedule already: a change's line, a milestone that has moved, a photo. */
-  async isInUse(tx: Tx, jobId: string): Promise<boolean> {
-    const row = await tx.one<{ used: boolean }>(
-      `select exists (select 1 from schedule_line where job_id = $1 and kind = 'change')
-         or exists (select 1 from milestone where job_id = $1 and state <> 'upcoming')
-         or exists (select 1 from photo where job_id = $1) as used`,
-      [jobId],
-    );
-    return row?.used ?? false;
   }
 
   /** Puts a schedule in the place of the one before. */
@@ -66,9 +58,15 @@ export class ScheduleOfValuesRepository {
 
 const placed = <T extends object>(items: T[]) => items.map((item, i) => ({ ...item, position: i + 1 }));
 
+// no draw, no change's line, no milestone that has moved, no photo
+const REPLACEABLE = /* sql */ `(j.last_draw_number = 0
+  and not exists (select 1 from schedule_line where job_id = j.id and kind = 'change')
+  and not exists (select 1 from milestone where job_id = j.id and state <> 'upcoming')
+  and not exists (select 1 from photo where job_id = j.id))`;
+
 const SCHEDULE = /* sql */ `
   select json_build_object(
-    'contractSumCents', j.contract_sum_cents, 'changesApprovedCents', j.changes_approved_cents,
+    'replaceable', ${REPLACEABLE}, 'contractSumCents', j.contract_sum_cents, 'changesApprovedCents', j.changes_approved_cents,
     'importedAt', (select to_char(min(created_at) at time zone 'utc', 'YYYY-MM-DD"T"HH24:MI:SS.MS"Z"') from schedule_line where job_id = j.id),
     'milestones', (select coalesce(json_agg(json_build_object('id', id, 'name', name) order by position), '[]') from milestone where job_id = j.id),
     'lines', (select coalesce(json_agg(json_build_object('id', id, 'number', number, 'position', position, 'phase', phase, 'description', description,

@@ -53,7 +53,7 @@ export class ScheduleOfValuesService {
   private async write(tx: Tx, actor: Actor, jobId: string, input: ImportSchedule): Promise<ScheduleOfValues> {
     const job = await this.repository.lockJob(tx, jobId);
     if (!job) throw new Problem('not_found');
-    if (job.lastDrawNumber > 0 || (await this.repository.isInUse(tx, jobId))) {
+    if (!job.replaceable) {
       throw new Problem('wrong_state', { detail: 'Changes, photos or draws rest on this schedule already. Further work is added by a change.' });
     }
     refuseWrongReferences(input);

@@ -63,6 +63,8 @@ export const ScheduleOfValues = z.object({
   lines: z.array(ScheduleLine),
   milestones: z.array(z.object({ id: Id, name: text })),
   importedAt: Instant.nullable(),
+  /** Whether another import may still take its place: nothing rests on it. */
+  replaceable: z.boolean(),
   sumCents: z.int(),
   contractSumTodayCents: z.int(),
   differenceCents: z.int(),

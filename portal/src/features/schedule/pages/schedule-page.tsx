@@ -41,6 +41,7 @@ function Schedule({ schedule, mayImport }: { schedule: ScheduleOfValues; mayImpo
         </Figure>
       </div>
       {schedule.differenceCents === 0 ? <p className="quiet">{strings.addsUp}</p> : null}
+      {mayImport && schedule.replaceable ? <div style={{ marginTop: 16 }}><LinkButton to="import" variant="subtle">{strings.importAgain}</LinkButton></div> : null}
     </>
   );
 }
