@@ -11,7 +11,6 @@ import classes from './shell.module.css';
 /** The job-wide pages, as words; everything else hangs on a band of the pole. */
 const PAGES: readonly { to: string; label: string; permission: Permission }[] = [
   { to: '.', label: 'House', permission: 'job.read' },
-  { to: 'site', label: 'Site', permission: 'milestone.claim' },
   { to: 'schedule', label: 'Schedule', permission: 'schedule_of_values.read' },
   { to: 'site', label: 'Site', permission: 'photo.add' },
   { to: 'changes', label: 'Changes', permission: 'change.read' },

@@ -1,0 +1,73 @@
+import axe from 'axe-core';
+import type { Browser, BrowserContext, Page } from 'playwright-core';
+import type { House } from '../../../api/test/support/house.ts';
+import { openWindow, type Screen } from './browser.ts';
+
+/** Somebody at a screen. */
+export class Someone {
+  private constructor(
+    readonly house: House,
+    readonly url: string,
+    readonly email: string,
+    readonly context: BrowserContext,
+    readonly page: Page,
+    readonly troubles: string[],
+  ) {}
+
+  static async at(browser: Browser, house: House, url: string, email: string, screen: Screen): Promise<Someone> {
+    const { context, page, troubles } = await openWindow(browser, screen);
+    return new Someone(house, url, email, context, page, troubles);
+  }
+
+  /** Signs in by the code that is mailed, wherever the address leads. */
+  async signIn(to = '/jobs', name?: string): Promise<void> {
+    const before = this.house.mail.to(this.email).length;
+    await this.page.goto(`${this.url}/sign-in?to=${encodeURIComponent(to)}`);
+    await this.page.getByLabel('Mail address').fill(this.email);
+    await this.page.getByRole('button', { name: 'Mail me a code' }).click();
+    await this.page.getByLabel('The six digits').fill(await this.code(before));
+    await this.page.getByRole('button', { name: 'Sign in', exact: true }).click();
+    if (name) {
+      await this.page.getByLabel('Your name').fill(name);
+      await this.page.getByRole('button', { name: 'Go on' }).click();
+    }
+    await this.page.waitForURL((url) => url.pathname === new URL(to, this.url).pathname);
+  }
+
+  /** The code in the first mail after the first `before` ones. */
+  async code(before: number): Promise<string> {
+    for (const end = Date.now() + 15_000; Date.now() < end; await new Promise((done) => setTimeout(done, 30))) {
+      const mail = this.house.mail.to(this.email).slice(before).filter((found) => /sign-in code/.test(found.subject ?? '')).at(-1);
+      const code = /^\d{6}/.exec(mail?.subject ?? '')?.[0];
+      if (code) return code;
+    }
+    throw new Error(`No code came to ${this.email}.`);
+  }
+
+  goto = (path: string) => this.page.goto(`${this.url}${path}`);
+  press = (name: string | RegExp) => this.page.getByRole('button', { name }).click();
+  follow = (name: string | RegExp) => this.page.getByRole('link', { name }).click();
+  fill = (label: string | RegExp, text: string) => this.page.getByLabel(label).fill(text);
+  sees = (text: string | RegExp) => this.page.getByText(text).first().waitFor();
+  /** Everything that the page says, as one text. */
+  text = async (): Promise<string> => (await this.page.locator('main').innerText()).replace(/\s+/g, ' ');
+
+  /** What axe finds on this page, in both themes. */
+  async axe(): Promise<string[]> {
+    const found: string[] = [];
+    for (const scheme of ['light', 'dark'] as const) {
+      await this.page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
+      // colors follow within a frame or two
+      await this.page.waitForTimeout(150);
+      await this.page.evaluate(axe.source);
+      const { violations } = await this.page.evaluate(() => (globalThis as unknown as { axe: typeof axe }).axe.run());
+      found.push(...violations.flatMap(({ id, nodes }) => nodes.map(({ target, any }) => `${scheme} ${id} ${target.join(' ')} ${any[0]?.message ?? ''}`)));
+    }
+    return found;
+  }
+
+  /** True where the page is wider than its window. */
+  overflows = (): Promise<boolean> => this.page.evaluate(() => document.documentElement.scrollWidth > document.documentElement.clientWidth);
+
+  shot = (file: string) => this.page.screenshot({ path: file, fullPage: true });
+}
