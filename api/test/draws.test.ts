@@ -152,6 +152,10 @@ describe('draws', () => {
     expect([done.state, done.dueCents, done.lines[2]?.workCents]).toEqual(['approved', 11_853_000, 2_000_000]);
     expect(await ledgerState(house, lent.job.id)).toMatchObject({ sum: 0, owed: 11_853_000, byDraws: 11_853_000 });
 
+    const kept = await house.sql<{ work: number; hand: number; asked: number }>(
+      `select l.work_cents::float8 as work, l.on_hand_cents::float8 as hand, (d.submitted->'basis'->'draw'->'lines'->2->>'workCents')::float8 as asked
+       from draw_line l join draw d on d.id = l.draw_id where l.draw_id = $1 and l.line_id = $2`, [id, lent.line['3']]);
+    expect(kept).toEqual([{ work: 2_000_000, hand: 420_000, asked: 2_800_000 }]);
     // the next draw starts from what was approved
     const next = made<Draw>(await lent.principal.post(`/jobs/${lent.job.id}/draws`, { id: v7(), throughOn: '2026-12-31' }));
     expect(next.lines[2]).toMatchObject({ workCents: 2_000_000, onHandCents: 420_000, billedBeforeCents: 2_420_000, thisDrawCents: 0 });

@@ -119,8 +119,12 @@ export class DecisionsService {
     const { homeownerCents, loanCents, effectHash } = figures;
     const dueCents = figures.computed.summary.dueNowCents;
     const state = drawStateByMoney(dueCents, 0);
-    await this.draws.approve(tx, draw.id, { basis: basisOf(facts), effectHash, dueOn, dueCents, homeownerCents, loanCents, state }, this.clock.now());
-    await this.ledger.post(tx, job.firmId, job.id, drawApproved(draw, basisOf(facts).draw, figures, today));
+    const basis = basisOf(facts);
+    const lowered = new Set(facts.objections.map(({ lineId }) => lineId));
+    const approved = basis.draw.lines.filter(({ id }) => lowered.has(id)).map(({ id, workCents, onHandCents }) => ({ lineId: id, workCents, onHandCents }));
+    await this.draws.lowerLines(tx, draw.id, approved);
+    await this.draws.approve(tx, draw.id, { basis, effectHash, dueOn, dueCents, homeownerCents, loanCents, state }, this.clock.now());
+    await this.ledger.post(tx, job.firmId, job.id, drawApproved(draw, basis.draw, figures, today));
     await this.mails.approved(tx, facts, figures, dueOn);
   }
 }

@@ -67,6 +67,16 @@ export class DrawsRepository {
     );
   }
 
+  /** With the approval, lines that were objected to fall to what is approved. */
+  async lowerLines(tx: Tx, drawId: string, lines: readonly LineEntry[]): Promise<void> {
+    if (lines.length === 0) return;
+    await tx.rows(
+      `update draw_line l set work_cents = r."workCents", on_hand_cents = r."onHandCents"
+       from jsonb_to_recordset($2::jsonb) as r ("lineId" uuid, "workCents" bigint, "onHandCents" bigint) where l.draw_id = $1 and l.line_id = r."lineId"`,
+      [drawId, JSON.stringify(lines)],
+    );
+  }
+
   /** A new version of a draw that is still being written; false where somebody was faster. */
   async edit(tx: Tx, drawId: string, version: number, fields: { throughOn: string; note: string }): Promise<boolean> {
     const row = await tx.one('update draw set through_on = $3, note = $4, version = version + 1 where id = $1 and version = $2 returning id', [drawId, version, fields.throughOn, fields.note]);

@@ -38,7 +38,7 @@ const WAITS = /* sql */ `
         ${awaited(`'lender', 'inspector', 'homeowner'`)} as people, j.id as job_id, j.name as job_name
       from milestone m, j where m.job_id = j.id and m.state = 'claimed'
     union all
-    select 'draw_to_approve', d.id, 'Draw ' || d.number, d.due_cents, (d.submitted_at at time zone j.time_zone)::date, null,
+    select 'draw_to_approve', d.id, 'Draw ' || d.number, coalesce(d.due_cents, (d.submitted->>'dueCents')::bigint), (d.submitted_at at time zone j.time_zone)::date, null,
         ${awaited(`'homeowner'`, 'array(select a.person_id from draw_approval a where a.draw_id = d.id and a.superseded_at is null)')}, j.id, j.name
       from draw d, j where d.job_id = j.id and d.state = 'submitted'
     union all

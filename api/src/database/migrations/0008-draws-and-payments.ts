@@ -315,12 +315,24 @@ end $$;
 create trigger void_stays before update on draw for each row when (old.state = 'void') execute function app.guard_void_draw();
 create trigger kept before delete on draw for each row execute function app.refuse();
 
+-- with its approval a line that was objected to falls to what is approved; what was asked stays in draw.submitted
+create function app.lowers_line(p_draw uuid, p_old jsonb, p_new jsonb) returns boolean
+  language sql stable security definer set search_path = public, pg_temp as $$
+  select exists (select 1 from draw d join draw_objection o on o.draw_id = d.id and o.withdrawn_at is null
+      where d.id = p_draw and d.state = 'submitted' and o.line_id = (p_old->>'line_id')::uuid)
+    and p_new->>'line_id' = p_old->>'line_id' and p_new->>'draw_id' = p_old->>'draw_id'
+    and (p_new->>'work_cents')::bigint <= (p_old->>'work_cents')::bigint
+    and (p_new->>'on_hand_cents')::bigint <= (p_old->>'on_hand_cents')::bigint
+$$;
+
 -- lines and photos of a draw that was sent stay as they were sent, until it comes back
 create function app.guard_draw_part() returns trigger language plpgsql security definer set search_path = public, pg_temp as $$
 declare d uuid := coalesce(to_jsonb(new)->>'draw_id', to_jsonb(old)->>'draw_id')::uuid;
 begin
   perform 1 from draw where id = d and state in ('draft', 'returned');
-  if not found then raise exception 'the draw was sent' using errcode = 'TP030'; end if;
+  if not found and not (tg_op = 'UPDATE' and tg_table_name = 'draw_line' and app.lowers_line(d, to_jsonb(old), to_jsonb(new))) then
+    raise exception 'the draw was sent' using errcode = 'TP030';
+  end if;
   if tg_op = 'DELETE' then return old; end if;
   return new;
 end $$;
@@ -377,7 +389,7 @@ create function app.stripe_firms() returns table (firm_id uuid) language sql sta
   select a.firm_id from stripe_account a where a.account is not null order by a.events_until
 $$;
 
-revoke all on function app.guard_draw, app.guard_void_draw, app.guard_draw_part, app.guard_payment, app.to_tell, app.homeowners_awaited, app.takes_payments,
+revoke all on function app.lowers_line, app.guard_draw, app.guard_void_draw, app.guard_draw_part, app.guard_payment, app.to_tell, app.homeowners_awaited, app.takes_payments,
   app.store_stripe_event, app.stripe_firms from public;
 grant execute on function app.to_tell, app.homeowners_awaited, app.takes_payments to app_read, app_write, app_worker;
 grant execute on function app.store_stripe_event to app_write;
