@@ -146,6 +146,43 @@ describe('photos of a milestone', () => {
     expect((await principal.get(`/jobs/${other.id}/photos/${id}`)).status).toBe(404);
   });
 
+  it('is weighed by place, time and likeness, anew when the site or the milestone changes, and never names another job', async () => {
+    const job = await createJob(principal, firmId);
+    const { Framing, Finish } = (await smallSchedule(principal, job.id)).milestoneId;
+    const send = async (milestone: string, content: Buffer) =>
+      ((await upload(principal, `/jobs/${job.id}/photos`, { id: v7(), milestoneId: milestone }, { name: 'a.jpg', content })).body as Photo).id;
+    const results = async (id: string, visitor = principal) => ((await visitor.get(`/jobs/${job.id}/photos/${id}`)).body as Photo).findings.map(({ kind, result }) => `${kind} ${result}`);
+    const become = (id: string, wanted: string[]) => until(async () => (await results(id)).join() === wanted.join(), wanted.join());
+
+    const today = new Date().toISOString().slice(0, 10).replaceAll('-', ':');
+    const near = await send(Framing, await jpeg({ scene: 21, taken: `${today} 17:00:00`, offset: '+00:00', at: { ...SITE, accuracyM: 8 } }));
+    await become(near, ['place unknown', 'time unknown', 'reuse new']);
+    const located = await principal.post(`/jobs/${job.id}/site`, { ...SITE, radiusM: 75 });
+    expect([located.status, (await principal.get(`/jobs/${job.id}/site`)).body]).toEqual([201, { location: { ...SITE, radiusM: 75 } }]);
+    await principal.post(`/jobs/${job.id}/milestones/${Framing}/start`, { version: 1 });
+    await become(near, ['place on_site', 'time inside', 'reuse new']);
+
+    // the same wall, smaller and compressed harder, shown again for the finish
+    const again = await sharp(await jpeg({ scene: 21 })).resize(900).jpeg({ quality: 55 }).toBuffer();
+    const reused = await send(Finish, again);
+    await become(reused, ['place unknown', 'time unknown', 'reuse alike']);
+    expect(((await principal.get(`/jobs/${job.id}/photos/${reused}`)).body as Photo).findings[2]?.sentence).toMatch(/added before for Framing on /);
+    const far = await send(Finish, await jpeg({ scene: 22, taken: '2020:01:01 09:00:00', at: { latitude: SITE.latitude + 0.1, longitude: SITE.longitude } }));
+    await become(far, ['place off_site', 'time unknown', 'reuse new']);
+
+    const next = await createJob(principal, firmId);
+    const { Foundation } = (await smallSchedule(principal, next.id)).milestoneId;
+    const { id: elsewhere } = (await upload(principal, `/jobs/${next.id}/photos`, { id: v7(), milestoneId: Foundation }, { name: 'a.jpg', content: again })).body as Photo;
+    await until(async () => ((await principal.get(`/jobs/${next.id}/photos/${elsewhere}`)).body as Photo).findings[2]?.result === 'alike', 'the other job');
+    const sentence = ((await principal.get(`/jobs/${next.id}/photos/${elsewhere}`)).body as Photo).findings[2]?.sentence;
+    expect(sentence).toMatch(/added before elsewhere/);
+    expect(sentence).not.toContain('Framing');
+    const guest = await join(principal, job.id, 'inspector');
+    expect(await results(near, guest)).toEqual(['place on_site', 'time inside', 'reuse new']);
+    expect((await guest.get(`/jobs/${job.id}/site`)).status).toBe(403);
+    expect((await guest.post(`/jobs/${job.id}/site`, { ...SITE, radiusM: 75 })).status).toBe(403);
+  });
+
   it('lists them newest first, page by page', async () => {
     const seen: string[] = [];
     let next: string | null = '';

@@ -9,6 +9,8 @@ import { CommandRunner, type Answered } from '../common/command-runner.ts';
 import { Clock } from '../common/clock.ts';
 import { Problem } from '../common/problem.ts';
 import { UnitOfWork, type Actor, type Tx } from '../common/unit-of-work.ts';
+import { askToWeigh } from '../photos/weigh-photos.ts';
+import { QueueRepository } from '../queue/queue.repository.ts';
 import { RecordRepository } from '../record/record.repository.ts';
 import { MilestoneMails } from './milestone-mails.ts';
 import { MilestonesRepository, type LockedMilestone, type MilestoneChange } from './milestones.repository.ts';
@@ -33,6 +35,7 @@ export class MilestonesService {
     private readonly repository: MilestonesRepository,
     private readonly mails: MilestoneMails,
     private readonly record: RecordRepository,
+    private readonly queue: QueueRepository,
     private readonly clock: Clock,
   ) {}
 
@@ -119,6 +122,8 @@ export class MilestonesService {
         if (state === null) throw new Problem('wrong_state', { detail: REFUSED[milestone.state] });
         const { change, data } = await effect(tx, milestone, roles, this.clock.now());
         await this.repository.change(tx, milestoneId, { ...change, state });
+        // when it was built decides what its photos can show
+        if (state !== milestone.state) await askToWeigh(tx, this.queue, jobId, milestone.firmId);
         await this.record.append(tx, { firmId: milestone.firmId, jobId, act: what.name, by: actor.personId, data: { milestone: milestoneId, state, ...data } });
         return await this.find(tx, jobId, milestoneId, roles);
       },

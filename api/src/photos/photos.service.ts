@@ -14,6 +14,7 @@ import { isAcceptedPhoto } from '../files/media-kind.ts';
 import { UploadReceiver, type Received } from '../files/upload-receiver.ts';
 import { QueueRepository } from '../queue/queue.repository.ts';
 import { RecordRepository } from '../record/record.repository.ts';
+import { askToWeigh } from './weigh-photos.ts';
 import { PhotosRepository, type StoredSize } from './photos.repository.ts';
 
 @Injectable()
@@ -75,7 +76,7 @@ export class PhotosService {
       act: async (tx) => {
         const firmId = await this.repository.locate(tx, jobId, location);
         if (firmId === undefined) throw new Problem('not_found');
-        await this.queue.enqueue(tx, 'weigh_photos', { jobId, firmId }, { key: `weigh:${jobId}` });
+        await askToWeigh(tx, this.queue, jobId, firmId);
         await this.record.append(tx, { firmId, jobId, act: 'site.located', by: actor.personId, data: { ...location } });
         return { location };
       },

@@ -4,6 +4,8 @@ import { Problem } from '../common/problem.ts';
 import type { UnitOfWork } from '../common/unit-of-work.ts';
 import type { FileStorage } from '../files/file-storage.ts';
 import { newStorageKey } from '../files/storage-key.ts';
+import type { QueueRepository } from '../queue/queue.repository.ts';
+import { askToWeigh } from './weigh-photos.ts';
 import { markReady, markUnreadable, photoToProcess } from './photo-work.repository.ts';
 import type { StoredSize } from './photos.repository.ts';
 import { readOrigin } from './read-exif.ts';
@@ -15,7 +17,7 @@ export interface PhotoJob {
 }
 
 /** Worker: reads when and where a photo was taken and makes its sizes. Run again it does nothing more. */
-export async function processPhoto(work: UnitOfWork, storage: FileStorage, { photoId, firmId }: PhotoJob): Promise<void> {
+export async function processPhoto(work: UnitOfWork, storage: FileStorage, queue: QueueRepository, { photoId, firmId }: PhotoJob): Promise<void> {
   const photo = await work.writeAsFirm(firmId, (tx) => photoToProcess(tx, photoId));
   if (!photo) throw new Problem('not_found');
   if (photo.state !== 'stored') return;
@@ -31,7 +33,10 @@ export async function processPhoto(work: UnitOfWork, storage: FileStorage, { pho
   const origin = await readOrigin(original, photo.timeZone);
   const sizes = await store(storage, { firmId, jobId: photo.jobId }, rendered);
   const { width, height, phash } = rendered;
-  const first = await work.writeAsFirm(firmId, (tx) => markReady(tx, photoId, { ...origin, width, height, phash, sizes }));
+  const first = await work.writeAsFirm(firmId, async (tx) => {
+    await askToWeigh(tx, queue, photo.jobId, firmId);
+    return await markReady(tx, photoId, { ...origin, width, height, phash, sizes });
+  });
   if (!first) await Promise.all(sizes.map(({ key }) => storage.remove(key)));
 }
 
