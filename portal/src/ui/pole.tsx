@@ -63,7 +63,7 @@ function Rod({ input, bandHref }: PoleProps) {
         <Link key={band.id ?? `general-${i}`} to={bandHref(band.id)} className={`${classes['band'] ?? ''} ${band.provenHeight > 0 && band.provenHeight < band.height ? (classes['now'] ?? '') : ''}`} style={{ top: band.top, height: Math.max(band.height, 2) }} aria-label={`${band.name}: ${band.caption}`}>
           {band.showsLabel ? (
             <span className={classes['label']}>
-              {band.name}
+              {`${band.name} `}
               <span>{band.caption}</span>
             </span>
           ) : null}
