@@ -2,7 +2,7 @@ import sharp, { type Sharp } from 'sharp';
 import { MOST_PHOTO_PIXELS, photoSizes, type PhotoSize } from '@tallypole/shared/schemas/photos';
 import { HASH_SIDE, perceptualHash } from './perceptual-hash.ts';
 
-export interface RenderedSize {
+interface RenderedSize {
   size: PhotoSize;
   content: Buffer;
   width: number;

@@ -9,7 +9,7 @@ export interface Finding {
 }
 
 /** A fix that is less sure than this says nothing. */
-export const WORST_ACCURACY_M = 100;
+const WORST_ACCURACY_M = 100;
 /** So many of 64 bits may differ between two pictures that are taken for one (a judgement, no source). */
 export const MOST_BITS_ALIKE = 6;
 

@@ -2,7 +2,7 @@ import { v7 } from 'uuid';
 import { Problem } from '../../lib/problem.ts';
 import { mayHelpToRetry } from '../../lib/upload.ts';
 
-export type QueuedState = 'waiting' | 'sending' | 'sent' | 'failed' | 'refused';
+type QueuedState = 'waiting' | 'sending' | 'sent' | 'failed' | 'refused';
 
 export interface QueuedPhoto {
   /** Made here, once: however often it is sent, it stays the same photo. */
