@@ -14,7 +14,7 @@ export interface Delivery {
 
 /** The Stripe stand-in in this process, with its control surface; debits move only when a test says so. */
 export class StripeStandIn {
-  private running: Awaited<ReturnType<typeof start>> | undefined;
+  private running: { close: () => Promise<void> } | undefined;
   private readonly dataDir = mkdtempSync(path.join(tmpdir(), 'tally-stripe-'));
   readonly url: string;
   private webhookUrl: string | undefined;

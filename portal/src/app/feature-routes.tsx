@@ -2,12 +2,20 @@ import type { RouteObject } from 'react-router-dom';
 
 /** Pages of the features, each loaded when it is opened. `job` paths stand below /jobs/:jobId, `wide` ones at the top. */
 export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
-  wide: [],
+  wide: [
+    { path: 'lending', lazy: () => import('../features/lender/pages/lending-page.tsx') },
+    { path: 'payouts', lazy: () => import('../features/payments/pages/payouts-page.tsx') },
+  ],
   job: [
     { index: true, lazy: () => import('../features/jobs/pages/house-page.tsx') },
     { path: 'schedule', lazy: () => import('../features/schedule/pages/schedule-page.tsx') },
     { path: 'schedule/import', lazy: () => import('../features/schedule/pages/import-page.tsx') },
     { path: 'milestones/:milestoneId', lazy: () => import('../features/milestones/pages/milestone-page.tsx') },
+    { path: 'draws', lazy: () => import('../features/draws/pages/draws-page.tsx') },
+    { path: 'draws/:drawId', lazy: () => import('../features/draws/pages/draw-page.tsx') },
+    { path: 'draws/:drawId/payments/:paymentId', lazy: () => import('../features/payments/pages/payment-page.tsx') },
+    { path: 'money', lazy: () => import('../features/payments/pages/money-page.tsx') },
+    { path: 'loan', lazy: () => import('../features/lender/pages/loan-page.tsx') },
     { path: 'site', lazy: () => import('../features/site/pages/site-page.tsx') },
     { path: 'site/:milestoneId', lazy: () => import('../features/site/pages/capture-page.tsx') },
   ],

@@ -23,7 +23,11 @@ const Terms = z.strictObject({
 });
 const withinAmount = (loan: { constructionCents: number; amountCents: number }) => loan.constructionCents <= loan.amountCents;
 
-export const SetLoan = Terms.refine(withinAmount, { path: ['constructionCents'], message: 'The part for construction must not be more than the loan.' });
+const rule = { path: ['constructionCents'], message: 'The part for construction must not be more than the loan.' };
+
+export const SetLoan = Terms.refine(withinAmount, rule);
+/** The same as a form holds it, whose id is made beside it. */
+export const LoanTerms = Terms.omit({ id: true }).refine(withinAmount, rule);
 export const Loan = Terms.extend({ version: Version, disbursedCents: z.int() });
 /** The job's loan, or that there is none. */
 export const JobLoan = z.object({ loan: Loan.nullable() });
