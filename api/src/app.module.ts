@@ -3,12 +3,14 @@ import { APP_FILTER, APP_GUARD, APP_PIPE } from '@nestjs/core';
 import { AuthModule } from './auth/auth.module.ts';
 import { JwtGuard } from './auth/jwt.guard.ts';
 import { DatabaseModule } from './database/database.module.ts';
+import { ChangesModule } from './changes/changes.module.ts';
 import { CommonModule } from './common/common.module.ts';
 import { ConfigurationModule } from './common/configuration.module.ts';
 import { ProblemFilter } from './common/problem.filter.ts';
 import { RateLimitGuard } from './common/rate-limit.guard.ts';
 import { validationPipe } from './common/validation.pipe.ts';
 import { DemoModule } from './demo/demo.module.ts';
+import { DocumentsModule } from './documents/documents.module.ts';
 import { DrawsModule } from './draws/draws.module.ts';
 import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
@@ -29,7 +31,7 @@ import { RecordModule } from './record/record.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

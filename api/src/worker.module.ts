@@ -1,5 +1,6 @@
 import { Module } from '@nestjs/common';
 import { SequelizeModule } from '@nestjs/sequelize';
+import { ChangePapersModule } from './changes/changes.module.ts';
 import { CommonModule } from './common/common.module.ts';
 import { CONFIGURATION, type Configuration } from './common/configuration.ts';
 import { ConfigurationModule } from './common/configuration.module.ts';
@@ -23,5 +24,5 @@ const workerConnection = (name?: string) =>
   });
 
 /** The same parts as the web process, on the worker's own role. */
-@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, StorageModule, SettlementModule] })
+@Module({ imports: [ConfigurationModule, workerConnection(), workerConnection('read'), CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, StorageModule, SettlementModule, ChangePapersModule] })
 export class WorkerModule {}

@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, it } from '@jest/globals';
 import type { House as HouseView } from '@tallypole/shared/schemas/house';
 import { join } from './support/builders.ts';
+import { issueChange, signChange, startChange } from './support/change-builders.ts';
 import { approvedDraw, lentJob, made, prove, sentDraw } from './support/draw-builders.ts';
 import { House } from './support/house.ts';
 import type { Visitor } from './support/visitor.ts';
@@ -42,6 +43,18 @@ describe('the house: the pole and what waits', () => {
     const firm = await see(lent.principal, lent.job.id);
     expect(firm.waits).toEqual([expect.objectContaining({ kind: 'draw_to_approve', mine: false })]);
     expect(firm.waits[0]?.waitsFor.length).toBe(2);
+  });
+
+  it('marks a change on its band from the day it is sent out, and asks those who have not signed', async () => {
+    const lent = await lentJob(house, url);
+    const seen = await issueChange(lent, await startChange(lent));
+    const framing = async () => (await see(lent.ann, lent.job.id)).pole.milestones.find(({ name }) => name === 'Framing');
+    expect((await framing())?.changes).toEqual([expect.objectContaining({ id: seen.id, pending: true })]);
+    const before = (await framing())?.scheduledCents ?? 0;
+    await signChange(lent, lent.ann, seen);
+    expect((await see(lent.ann, lent.job.id)).waits).toEqual([expect.objectContaining({ kind: 'change_to_decide', mine: false, cents: 95_137, waitsFor: ['Ben Moss'] })]);
+    await signChange(lent, lent.ben, seen, 'Ben Moss');
+    expect(await framing()).toMatchObject({ scheduledCents: before + 95_137, changes: [{ pending: false }] });
   });
 
   it('shows an inspector how high the house stands, and no price', async () => {

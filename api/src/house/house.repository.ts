@@ -50,5 +50,7 @@ const FACTS = /* sql */ `
     'billed', coalesce((select ${BILLED_BY_MILESTONE('d.id')} from draw d where d.job_id = j.id and d.approved_at is not null order by d.number desc limit 1), '[]'),
     'draws', (select coalesce(json_agg(json_build_object('billed', ${ADDED_BY_MILESTONE}, 'paidCents', ${PAID}) order by d.number), '[]')
       from draw d where d.job_id = j.id and d.approved_at is not null),
-    'changes', '[]'::json) as facts
+    'changes', (select coalesce(json_agg(json_build_object('id', c.id, 'milestoneId', c.milestone_id, 'pending', c.state <> 'approved',
+        'label', 'Change ' || c.number || c.revision || ': ' || c.title || case when c.state = 'approved' then '' else ', not signed yet' end) order by c.number, c.revision), '[]')
+      from change c where c.job_id = j.id and c.state in ('issued', 'partly_signed', 'approved'))) as facts
   from job j where j.id = $1`;

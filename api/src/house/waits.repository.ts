@@ -38,6 +38,10 @@ const WAITS = /* sql */ `
         ${awaited(`'lender', 'inspector', 'homeowner'`)} as people, j.id as job_id, j.name as job_name
       from milestone m, j where m.job_id = j.id and m.state = 'claimed'
     union all
+    select 'change_to_decide', c.id, 'Change ' || c.number || c.revision || ': ' || c.title, c.charged_cents, (c.issued_at at time zone j.time_zone)::date, c.good_until,
+        ${awaited(`'homeowner'`, 'array(select s.person_id from change_signature s where s.change_id = c.id and s.superseded_at is null)')}, j.id, j.name
+      from change c, j where c.job_id = j.id and c.state in ('issued', 'partly_signed')
+    union all
     select 'draw_to_approve', d.id, 'Draw ' || d.number, coalesce(d.due_cents, (d.submitted->>'dueCents')::bigint), (d.submitted_at at time zone j.time_zone)::date, null,
         ${awaited(`'homeowner'`, 'array(select a.person_id from draw_approval a where a.draw_id = d.id and a.superseded_at is null)')}, j.id, j.name
       from draw d, j where d.job_id = j.id and d.state = 'submitted'

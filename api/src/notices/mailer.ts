@@ -8,6 +8,7 @@ export interface Envelope {
   /** Stable for one notice, so that a mail sent twice at a crash is recognized as one. */
   messageId: string;
   reason: string;
+  attachments?: readonly { filename: string; content: Buffer }[];
 }
 
 /** The only door to SMTP. */
@@ -30,6 +31,7 @@ export class Mailer {
       subject: mail.subject,
       text: mail.text,
       html: mail.html,
+      ...(envelope.attachments ? { attachments: envelope.attachments.map((file) => ({ ...file, contentType: 'application/pdf' })) } : {}),
       messageId: envelope.messageId,
       headers: { 'X-Tallypole-Reason': envelope.reason, 'Auto-Submitted': 'auto-generated' },
     });

@@ -2,8 +2,10 @@ import type { INestApplicationContext } from '@nestjs/common';
 import type { TaskList } from 'graphile-worker';
 import { z } from 'zod';
 import { sendCode } from '../auth/send-code.repository.ts';
+import { changeTasks } from '../changes/change-tasks.ts';
 import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
 import { UnitOfWork } from '../common/unit-of-work.ts';
+import { FILE_STORAGE, type FileStorage } from '../files/file-storage.ts';
 import type { Mailer } from '../notices/mailer.ts';
 import { sendNotice } from '../notices/send-notice.repository.ts';
 import { paymentTasks } from '../payments/payment-tasks.ts';
@@ -20,8 +22,9 @@ export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
   return {
     ...paymentTasks(app),
     ...photoTasks(app),
+    ...changeTasks(app),
     send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
-    send_notice: (payload) => sendNotice(work, mailer, configuration.PUBLIC_URL, NoticeJob.parse(payload)),
+    send_notice: (payload) => sendNotice(work, mailer, { publicUrl: configuration.PUBLIC_URL, storage: app.get<FileStorage>(FILE_STORAGE) }, NoticeJob.parse(payload)),
     sweep_old: async () => {
       await work.write(undefined, (tx) => tx.rows('select app.sweep(now())'));
     },

@@ -9,6 +9,7 @@ const office = ['principal', 'manager', 'books'] as const;
  */
 export const permissions = {
   'firm.read': firm,
+  'firm.pricing': ['principal', 'manager'],
   'job.create': ['principal', 'manager'],
   'job.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
   'people.read': [...firm, 'homeowner', 'lender'],
@@ -34,6 +35,7 @@ export const permissions = {
   'change.issue': ['principal', 'manager'],
   'change.review': ['principal', 'manager', 'designer'],
   'change.decide': ['homeowner'],
+  'document.read': [...office, 'homeowner', 'lender'],
   'draw.read': [...office, 'homeowner', 'lender'],
   'draw.prepare': ['principal', 'manager', 'books'],
   'draw.approve': ['homeowner'],

@@ -1,0 +1,31 @@
+import { Injectable } from '@nestjs/common';
+import type { Tx } from '../common/unit-of-work.ts';
+
+export interface DocumentRow {
+  id: string;
+  name: string;
+  sha256: string;
+  bytes: number;
+  storageKey: string;
+}
+
+export interface NewDocument extends DocumentRow {
+  firmId: string;
+  jobId: string;
+  kind: 'change' | 'signed_change';
+  subjectId: string;
+  createdAt: Date;
+}
+
+@Injectable()
+export class DocumentsRepository {
+  async add(tx: Tx, d: NewDocument): Promise<void> {
+    await tx.rows('insert into document (firm_id, job_id, id, kind, subject_id, name, sha256, bytes, storage_key, created_at) values ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10)', [
+      d.firmId, d.jobId, d.id, d.kind, d.subjectId, d.name, d.sha256, d.bytes, d.storageKey, d.createdAt,
+    ]);
+  }
+
+  async find(tx: Tx, jobId: string, documentId: string): Promise<DocumentRow | undefined> {
+    return await tx.one<DocumentRow>('select id, name, sha256, bytes, storage_key as "storageKey" from document where job_id = $1 and id = $2', [jobId, documentId]);
+  }
+}
