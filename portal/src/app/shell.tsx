@@ -57,6 +57,8 @@ function PersonMenu({ me }: { me: Me }) {
           </Menu.Label>
         ))}
         <Menu.Item onClick={() => void navigate('/jobs')}>Your jobs</Menu.Item>
+        {me.jobs.some(({ roles }) => roles.includes('lender')) ? <Menu.Item onClick={() => void navigate('/lending')}>Draws to fund</Menu.Item> : null}
+        {me.firms.some(({ role }) => role === 'principal') ? <Menu.Item onClick={() => void navigate('/payouts')}>How you get paid</Menu.Item> : null}
         <Menu.Divider />
         {SCHEMES.map(({ value, label }) => (
           <Menu.Item key={value} onClick={() => setColorScheme(value)} aria-current={colorScheme === value}>

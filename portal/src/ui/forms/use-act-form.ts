@@ -74,7 +74,7 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
     } catch (error) {
       const problem = error instanceof Problem ? error : new Problem('failed', 'Sorry, something went wrong on our side. Nothing was changed.', 500);
       // a refused act left no trace; a corrected form is another act under the same key only if the first was never stored
-      if (problem.errors.length > 0) form.setErrors(Object.fromEntries(problem.errors.map((e) => [pathOf(e.pointer), e.message])) as never);
+      if (problem.errors.length > 0) form.setErrors(Object.fromEntries(problem.errors.map((e) => [pathOf(e.pointer), e.message])));
       if (problem.code === 'key_reused') idempotency.spend();
       failed(problem);
     } finally {
@@ -89,7 +89,7 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
     submitting,
     failure,
     failures,
-    onSubmit: form.onSubmit((typed) => void perform(typed as Values), () => failed(null)),
+    onSubmit: (event) => form.onSubmit((typed) => void perform(typed), () => failed(null))(event),
     field: (path) => ({ ...(form.getInputProps(path) as Omit<FieldProps, 'id'>), id: fieldId(name, path) }),
   };
 }

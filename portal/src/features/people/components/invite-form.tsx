@@ -17,7 +17,7 @@ export function InviteForm({ jobId }: { jobId: string }) {
   const id = useNewId();
   const act = useActForm({
     name: `invite-${jobId}`,
-    initialValues: { id, name: '', email: '', role: 'homeowner' as JobRole },
+    initialValues: { id, name: '', email: '', role: ROLES[0]?.value ?? 'homeowner' },
     schema: Invite,
     send: (values, key) => invite(jobId, { ...values, id }, key),
     onDone: (people) => {

@@ -1,0 +1,60 @@
+import type { Change } from '@tallypole/shared/schemas/changes';
+import type { ChangeState } from '@tallypole/shared/schemas/change-states';
+import type { Meaning } from '../../ui/state-tag.tsx';
+
+export const states: Readonly<Record<ChangeState, { words: string; meaning: Meaning }>> = {
+  draft: { words: 'Draft', meaning: 'neutral' },
+  in_review: { words: 'In review', meaning: 'neutral' },
+  issued: { words: 'Waits for a decision', meaning: 'waits' },
+  partly_signed: { words: 'Waits for another signature', meaning: 'waits' },
+  approved: { words: 'Signed', meaning: 'settled' },
+  declined: { words: 'Declined', meaning: 'refused' },
+  lapsed: { words: 'Lapsed', meaning: 'refused' },
+  withdrawn: { words: 'Withdrawn', meaning: 'neutral' },
+  superseded: { words: 'Replaced by a revision', meaning: 'neutral' },
+};
+
+/** What a change means for whoever builds. */
+export const forSite = (state: ChangeState): { words: string; meaning: Meaning } =>
+  state === 'approved' ? { words: 'Build this', meaning: 'settled' } : state === 'issued' || state === 'partly_signed' || state === 'draft' || state === 'in_review' ? { words: 'Not yet', meaning: 'waits' } : { words: 'Refused: build as drawn', meaning: 'refused' };
+
+export const origins = [
+  { value: 'homeowner_wish', label: "The homeowner's wish" },
+  { value: 'field_condition', label: 'Something found on site' },
+  { value: 'design_correction', label: 'A correction of the design' },
+  { value: 'allowance', label: 'An allowance to settle' },
+  { value: 'substitution', label: "A supplier's substitution" },
+  { value: 'weather', label: 'Weather: time alone' },
+] as const;
+
+export const presentations = [
+  { value: 'itemized', label: 'Line by line, mark-up spread over the lines' },
+  { value: 'grouped', label: 'By kind: labor, materials, …' },
+  { value: 'one_sum', label: 'As one sum' },
+] as const;
+
+export const reviewKinds = [
+  { value: 'engineered_sheet', label: "The supplier's engineered sheet" },
+  { value: 'designer_review', label: "The designer's review" },
+  { value: 'official_approval', label: "The building official's approval" },
+] as const;
+
+export const funding: Readonly<Record<NonNullable<Change['effect']>['funding'], { before: string; after: string }>> = {
+  nothing_to_pay: { before: 'nothing is to be paid', after: 'nobody' },
+  homeowner: { before: 'not part of a loan', after: 'you, in cash' },
+  homeowner_until_lender_agrees: { before: 'the bank has not agreed', after: 'you, in cash' },
+  less_to_pay: { before: 'less is to be paid', after: 'less to pay' },
+};
+
+export const strings = {
+  title: 'Changes',
+  hint: 'What was changed since the contract was signed, and what waits for a decision.',
+  empty: 'Here will be every change to the contract: what it is for, what it costs, and who signed it.',
+  caution: 'This touches the structure of the house. The plans, the designer of record and the local code decide what may be built; the figures here are for the price.',
+  consent: 'I agree to sign this change electronically. I can ask for it on paper instead.',
+  changed: 'What signing does has changed since you opened it. These are the figures now; look at them before you decide.',
+  refuse: 'If you do nothing, the price lapses after that day and the change is not made. Nothing is agreed by silence.',
+} as const;
+
+export const changeName = ({ number, revision }: { number: number; revision: string }): string => `Change ${number}${revision}`;
+export const dayCount = (days: number): string => (days === 0 ? 'no more days' : days === 1 ? 'one more day' : `${days} more days`);
