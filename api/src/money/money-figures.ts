@@ -1,6 +1,7 @@
 import { given, money, step, type Step } from '@tallypole/shared/arithmetic';
 import { minus, sum } from '@tallypole/shared/money';
 import type { JobMoney } from '@tallypole/shared/schemas/money';
+import { writtenBusinessDate } from '../common/written-date.ts';
 import type { Account, Source } from '../ledger/entry.ts';
 import type { MoneyFacts, Posting } from './money.repository.ts';
 
@@ -45,7 +46,7 @@ export function moneyFigures(facts: MoneyFacts, forFirm: boolean): Figures {
 
 function total(label: string, rule: string, postings: readonly Posting[], sign: 1 | -1): Figure {
   const turned = (cents: number) => (sign === 1 ? cents : minus(0, cents));
-  const inputs = postings.map((posting) => given(`${posting.memo}, ${posting.onDate}`, money(turned(posting.cents)), originOf(posting)));
+  const inputs = postings.map((posting) => given(`${posting.memo}, ${writtenBusinessDate(posting.onDate)}`, money(turned(posting.cents)), originOf(posting)));
   return figure(label, rule, turned(sum(postings.map(({ cents }) => cents))), inputs);
 }
 

@@ -61,6 +61,7 @@ export const strings = {
   withdrawn: 'The objection is withdrawn.',
   approve: {
     title: 'Approve',
+    lead: (due: number, you: number) => `This waits for you: ${formatMoney(due)} is asked, ${formatMoney(you)} of it from you. Look at the photos, object to any line, or approve below.`,
     button: (number: number, cents: number) => `Approve draw ${number}: you pay ${formatMoney(cents)}`,
     effect: (number: number, due: number, you: number, loan: number, dueOn: string) =>
       `Approving draw ${number} makes ${formatMoney(due)} due on ${dueOn}: ${formatMoney(you)} from you${loan > 0 ? ` and ${formatMoney(loan)} from the loan` : ''}. It pays for work; it does not accept defects.`,
@@ -97,8 +98,8 @@ export const strings = {
     allowExplain: 'A line that you leave as billed is taken as it is. What is owed does not change, only who pays it.',
     conditions: 'Conditions before money is sent',
     conditionsHint: 'Leave empty if there are none.',
-    allowButton: (loan: number) => `Allow: the loan pays up to ${formatMoney(loan)}`,
-    allowButtonPlain: 'Allow these lines',
+    allowButton: 'Allow these lines',
+    allowAgain: 'Change what is allowed',
     allowed: 'Recorded. Builder and homeowners see it.',
     fund: 'Record the funding',
     fundExplain: (left: number) => `${formatMoney(left)} is left for the loan to pay in this draw.`,

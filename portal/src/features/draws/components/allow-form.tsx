@@ -9,6 +9,7 @@ import { actOnDraw } from '../api/draw-acts.ts';
 import { strings } from '../strings.ts';
 import { billedLines, photosOf, seenRate } from './proof.ts';
 import { useDrawn } from './use-drawn.ts';
+import classes from './draws.module.css';
 
 const words = strings.review;
 const { columns: titles } = words;
@@ -44,7 +45,8 @@ export function AllowForm({ job, draw }: { job: Job; draw: Draw }) {
       <h3 style={{ margin: '0 0 8px' }}>{words.allow}</h3>
       <p className="quiet">{words.allowExplain}</p>
       <LineSheet label={words.proof} rows={rows} rowKey={({ line }) => line.lineId} columns={COLUMNS} onEdit={edit} />
-      <Form act={unread ? { ...act, onSubmit: (event) => event?.preventDefault() } : act} submitLabel={words.allowButtonPlain}>
+      <div className={classes['afterSheet']} />
+      <Form act={unread ? { ...act, onSubmit: (event) => event?.preventDefault() } : act} submitLabel={words.allowButton}>
         <TextAreaField field={act.field('conditions')} label={words.conditions} hint={words.conditionsHint} rows={2} />
         <TextAreaField field={act.field('note')} label={words.note} rows={2} />
       </Form>
@@ -71,7 +73,7 @@ function changedLines(rows: readonly Row[]) {
 }
 
 const COLUMNS: readonly SheetColumn<Row>[] = [
-  { key: 'line', title: titles.line, text: ({ line }) => line.description },
+  { key: 'line', title: titles.line, width: '14rem', text: ({ line }) => line.description },
   { key: 'billed', title: titles.billed, width: '8.5rem', align: 'right', text: ({ line }) => formatAmount(sum([line.billedBeforeCents, line.thisDrawCents])) },
   { key: 'rate', title: titles.rate, width: '5.5rem', align: 'right', text: ({ line }) => percent(line.billedRate) },
   { key: 'seen', title: titles.proven, width: '5.5rem', align: 'right', text: ({ seen }) => seen },

@@ -5,7 +5,7 @@ import { useMemo } from 'react';
 import { writtenDate } from '../../../lib/dates.ts';
 import { LineSheet } from '../../../ui/line-sheet/line-sheet.tsx';
 import type { SheetColumn } from '../../../ui/line-sheet/types.ts';
-import { FailureState, Note, Section } from '../../../ui/page.tsx';
+import { FailureState, Note } from '../../../ui/page.tsx';
 import { strings } from '../strings.ts';
 import { DrawHead } from './draw-head.tsx';
 import { DrawSummary } from './draw-summary.tsx';
@@ -40,7 +40,7 @@ export function DrawEditor({ job, draw }: { job: Job; draw: Draw }) {
           <strong>{strings.cameBack}</strong> {draw.returnReason}
         </Note>
       )}
-      <div className={classes['page']}>
+      <div className={classes['wide']}>
         <div>
           <LineSheet label={strings.name(draw.number)} rows={rows} rowKey={({ line }) => line.lineId} columns={COLUMNS} onEdit={edits.edit} group={heading} />
           <p className="quiet">{strings.keys}</p>
@@ -58,14 +58,12 @@ export function DrawEditor({ job, draw }: { job: Job; draw: Draw }) {
           <SendDraw jobId={job.id} draw={draw} blocked={edits.refused.size > 0} settled={edits.settled} />
         </div>
       </div>
-      <Section title={strings.void}>
-        <VoidForm jobId={job.id} draw={draw} />
-      </Section>
+      <VoidForm jobId={job.id} draw={draw} />
     </>
   );
 }
 
-const amount = (key: string, title: string, cents: (line: DrawLine) => number): SheetColumn<SheetLine> => ({ key, title, width: '8rem', align: 'right', text: ({ line }) => formatAmount(cents(line)) });
+const amount = (key: string, title: string, cents: (line: DrawLine) => number): SheetColumn<SheetLine> => ({ key, title, width: '6.4rem', align: 'right', text: ({ line }) => formatAmount(cents(line)) });
 const typed = (key: string, title: string, width: string, text: (line: DrawLine) => string): SheetColumn<SheetLine> => ({
   key, title, width, align: 'right', edit: true, inputMode: 'decimal',
   text: ({ line, refused }) => refused.get(cellKey(line.lineId, key))?.text ?? text(line),
@@ -73,11 +71,11 @@ const typed = (key: string, title: string, width: string, text: (line: DrawLine)
 });
 
 const COLUMNS: readonly SheetColumn<SheetLine>[] = [
-  { key: 'line', title: titles.line, text: ({ line }) => `${line.number} ${line.description}`.trim() },
+  { key: 'line', title: titles.line, width: '13rem', text: ({ line }) => `${line.number} ${line.description}`.trim() },
   amount('scheduled', titles.scheduled, ({ scheduledCents }) => scheduledCents),
-  typed('rate', titles.rate, '5.5rem', ({ workRate }) => formatRate(workRate).replace(' %', '')),
-  typed('work', titles.work, '8rem', ({ workCents }) => formatAmount(workCents)),
-  typed('onHand', titles.onHand, '7.5rem', ({ onHandCents }) => formatAmount(onHandCents)),
+  typed('rate', titles.rate, '4.6rem', ({ workRate }) => formatRate(workRate).replace(' %', '')),
+  typed('work', titles.work, '6.4rem', ({ workCents }) => formatAmount(workCents)),
+  typed('onHand', titles.onHand, '6.2rem', ({ onHandCents }) => formatAmount(onHandCents)),
   amount('before', titles.before, ({ billedBeforeCents }) => billedBeforeCents),
   amount('now', titles.now, ({ thisDrawCents }) => thisDrawCents),
   amount('left', titles.left, ({ leftCents }) => leftCents),

@@ -24,8 +24,9 @@ export function DrawView({ job, draw }: { job: Job; draw: Draw }) {
   return (
     <>
       <DrawHead draw={draw} />
+      {decides && !draw.approvedByMe ? <p className={classes['lead']}>{strings.approve.lead(draw.dueCents, draw.homeownerCents)}</p> : null}
       {homeowner ? <PayPart job={job} draw={draw} /> : null}
-      <div className={classes['page']}>
+      <div className={lender ? classes['wide'] : classes['page']}>
         <div>
           <Section title={strings.photos.built} ruled={false}>
             <BuiltPhotos job={job} draw={draw} />
@@ -46,11 +47,7 @@ export function DrawView({ job, draw }: { job: Job; draw: Draw }) {
         </Section>
       ) : null}
       <DrawPayments draw={draw} />
-      {may(job.roles, 'draw.prepare') && mayDraw(draw.state, 'void') ? (
-        <Section title={strings.void}>
-          <VoidForm jobId={job.id} draw={draw} />
-        </Section>
-      ) : null}
+      {may(job.roles, 'draw.prepare') && mayDraw(draw.state, 'void') ? <VoidForm jobId={job.id} draw={draw} /> : null}
     </>
   );
 }

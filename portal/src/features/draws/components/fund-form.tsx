@@ -23,7 +23,7 @@ export function FundForm({ job, draw }: { job: Job; draw: Draw }) {
   const { amountCents } = act.form.values;
   return (
     <>
-      <h3 style={{ margin: '24px 0 8px' }}>{words.fund}</h3>
+      <h3 style={{ margin: '0 0 8px' }}>{words.fund}</h3>
       <Form act={act} submitLabel={words.fundButton(typeof amountCents === 'number' ? amountCents : left)}>
         <p>{words.fundExplain(left)}</p>
         <FieldRow>

@@ -1,5 +1,4 @@
 import type { Draw } from '@tallypole/shared/schemas/draws';
-import { mayReview } from '@tallypole/shared/schemas/draw-states';
 import type { Job } from '@tallypole/shared/schemas/jobs';
 import { writtenDate } from '../../../lib/dates.ts';
 import { Money } from '../../../ui/money.tsx';
@@ -18,17 +17,28 @@ export function LenderReview({ job, draw }: { job: Job; draw: Draw }) {
   return (
     <Section title={words.title}>
       {open && draw.reviewState === 'ordered' ? <InspectionForm job={job} draw={draw} /> : null}
-      {open && mayReview(draw.reviewState, 'allow') ? <AllowForm job={job} draw={draw} /> : null}
-      {open && draw.reviewState === 'allowed' ? draw.approvedAt === null ? <p className="quiet">{words.waitsForApproval}</p> : <FundForm job={job} draw={draw} /> : null}
+      {open && draw.reviewState === 'inspected' ? <AllowForm job={job} draw={draw} /> : null}
+      {open && draw.reviewState === 'allowed' ? <AfterAllowing job={job} draw={draw} /> : null}
       <History draw={draw} />
     </Section>
   );
 }
 
+/** Funding is what comes next; what was allowed can still be changed. */
+const AfterAllowing = ({ job, draw }: { job: Job; draw: Draw }) => (
+  <>
+    {draw.approvedAt === null ? <p className="quiet">{words.waitsForApproval}</p> : <FundForm job={job} draw={draw} />}
+    <details className={classes['history']}>
+      <summary>{words.allowAgain}</summary>
+      <AllowForm job={job} draw={draw} />
+    </details>
+  </>
+);
+
 function History({ draw }: { draw: Draw }) {
   if (draw.reviews.length === 0 && draw.fundings.length === 0) return null;
   return (
-    <>
+    <div className={classes['history']}>
       <h3>{words.history}</h3>
       <ul className={classes['plain']}>
         {draw.reviews.map(({ step, onDate, by, note, conditions, at }) => (
@@ -44,6 +54,6 @@ function History({ draw }: { draw: Draw }) {
           </li>
         ))}
       </ul>
-    </>
+    </div>
   );
 }

@@ -87,8 +87,12 @@ export function VoidForm({ jobId, draw }: OfDraw) {
     onDone: (after) => drawn(after, strings.voided),
   });
   return (
-    <Form act={act} submitLabel={strings.void} color="oxide">
-      <TextAreaField field={act.field('reason')} label={strings.voidReason} rows={2} />
-    </Form>
+    <details className={classes['history']}>
+      <summary>{strings.void}</summary>
+      <div className={classes['afterSheet']} />
+      <Form act={act} submitLabel={strings.void} color="oxide">
+        <TextAreaField field={act.field('reason')} label={strings.voidReason} rows={2} />
+      </Form>
+    </details>
   );
 }
