@@ -4,7 +4,7 @@ import type { MilestoneState } from '@tallypole/shared/schemas/milestones';
 import type { Payment } from '@tallypole/shared/schemas/payments';
 
 /** A line as it stood, beside its figures, so that an approved draw needs nothing else to be shown. */
-export interface BasisLine {
+interface BasisLine {
   id: string;
   number: string;
   phase: string;
@@ -13,7 +13,7 @@ export interface BasisLine {
   milestoneId: string | null;
 }
 
-export interface BasisMilestone {
+interface BasisMilestone {
   id: string;
   name: string;
   state: MilestoneState;
@@ -45,7 +45,7 @@ export interface DrawBasis {
   loan: BasisLoan | null;
 }
 
-export interface ObjectionFacts {
+interface ObjectionFacts {
   id: string;
   lineId: string;
   objectedCents: number;

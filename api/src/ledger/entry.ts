@@ -3,7 +3,7 @@ export type Account =
   | 'bank' | 'processing_fees' | 'disputed' | 'late_interest' | 'write_off';
 /** Where the money of a receivable is expected from: the homeowner owes all of it, the loan is where a part comes from. */
 export type Source = 'homeowner' | 'loan';
-export type Cause = 'draw' | 'payment' | 'refund' | 'return' | 'dispute' | 'fee' | 'payout' | 'adjustment' | 'deposit';
+type Cause = 'draw' | 'payment' | 'refund' | 'return' | 'dispute' | 'fee' | 'payout' | 'adjustment' | 'deposit';
 
 export interface LedgerLine {
   account: Account;
