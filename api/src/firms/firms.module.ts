@@ -2,8 +2,11 @@ import { Module } from '@nestjs/common';
 import { FirmsController } from './firms.controller.ts';
 import { FirmsRepository } from './firms.repository.ts';
 import { FirmsService } from './firms.service.ts';
+import { MembersController } from './members.controller.ts';
+import { MembersRepository } from './members.repository.ts';
+import { MembersService } from './members.service.ts';
 import { PricingController } from './pricing.controller.ts';
 import { PricingService } from './pricing.service.ts';
 
-@Module({ controllers: [FirmsController, PricingController], providers: [FirmsService, PricingService, FirmsRepository] })
+@Module({ controllers: [FirmsController, MembersController, PricingController], providers: [FirmsService, MembersService, PricingService, FirmsRepository, MembersRepository] })
 export class FirmsModule {}

@@ -7,6 +7,7 @@ import path from 'node:path';
 export const noticeKinds = [
   'sign-in-code',
   'invitation',
+  'firm-invitation',
   'invitation-accepted',
   'change-issued',
   'change-partly-signed',

@@ -21,6 +21,7 @@ export class InvitationAcceptance {
 
   acceptAll(actor: Actor): Promise<number> {
     return this.work.write(actor, async (tx) => {
+      await this.repository.acceptFirmInvitations(tx, this.clock.now());
       const accepted = await this.repository.acceptInvitations(tx, this.clock.now());
       for (const invitation of accepted) await this.tell(tx, actor, invitation);
       return accepted.length;

@@ -26,6 +26,11 @@ export class PeopleRepository {
     return await tx.rows<AcceptedInvitation>('select * from app.accept_invitations($1)', [now]);
   }
 
+  /** Into firms that invited this address. */
+  async acceptFirmInvitations(tx: Tx, now: Date): Promise<void> {
+    await tx.rows('select app.accept_firm_invitations($1)', [now]);
+  }
+
   async acceptedFacts(tx: Tx, jobId: string): Promise<{ name: string; email: string; jobName: string }> {
     const row = await tx.one<{ name: string; email: string; jobName: string }>(
       'select coalesce(p.name, p.email) as name, p.email, j.name as "jobName" from person p, job j where p.id = app.actor() and j.id = $1',

@@ -52,9 +52,9 @@ function PersonMenu({ me }: { me: Me }) {
       </Menu.Target>
       <Menu.Dropdown>
         {me.firms.map((firm) => (
-          <Menu.Label key={firm.id}>
+          <Menu.Item key={firm.id} onClick={() => void navigate(`/firms/${firm.id}`)}>
             {firm.name}, {firm.role}
-          </Menu.Label>
+          </Menu.Item>
         ))}
         <Menu.Item onClick={() => void navigate('/jobs')}>Your jobs</Menu.Item>
         {me.jobs.some(({ roles }) => roles.includes('lender')) ? <Menu.Item onClick={() => void navigate('/lending')}>Draws to fund</Menu.Item> : null}

@@ -9,6 +9,7 @@ const office = ['principal', 'manager', 'books'] as const;
  */
 export const permissions = {
   'firm.read': firm,
+  'firm.invite': ['principal'],
   'firm.pricing': ['principal', 'manager'],
   'job.create': ['principal', 'manager'],
   'job.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
