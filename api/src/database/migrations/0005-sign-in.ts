@@ -10,7 +10,7 @@ create table sign_in_code (
   expires_at timestamptz(3) not null,
   used_at timestamptz(3)
 );
-create index on sign_in_code (email, created_at desc);
+create index on sign_in_code (email, id desc);
 -- no policy: reached only through the functions below
 alter table sign_in_code enable row level security;
 alter table sign_in_code force row level security;
@@ -36,7 +36,7 @@ create function app.try_code(p_email text, p_hash bytea, p_now timestamptz) retu
   language plpgsql security definer set search_path = public, pg_temp as $$
 declare c sign_in_code%rowtype;
 begin
-  select * into c from sign_in_code where email = p_email order by created_at desc, id desc limit 1 for update;
+  select * into c from sign_in_code where email = p_email order by id desc limit 1 for update;
   if not found or c.used_at is not null or c.expires_at <= p_now or c.tries >= 5 or c.code_hash is null then return 'expired'; end if;
   if c.code_hash <> p_hash then
     update sign_in_code set tries = tries + 1 where id = c.id;

@@ -1,63 +1,78 @@
-import type { INestApplicationContext } from '@nestjs/common';
-import { v4, v7 } from 'uuid';
-import type { CreateJob } from '@tallypole/shared/schemas/jobs';
-import type { JobRole } from '@tallypole/shared/schemas/roles';
-import type { Actor } from '../../common/unit-of-work.ts';
+import { v7 } from 'uuid';
+import type { ContractTerms } from '@tallypole/shared/schemas/jobs';
+import type { FirmRole, JobRole } from '@tallypole/shared/schemas/roles';
 import { demoPeople } from '../../demo/demo-people.ts';
-import { FirmsService } from '../../firms/firms.service.ts';
-import { JobsService } from '../../jobs/jobs.service.ts';
-import { PeopleService } from '../../people/people.service.ts';
+import { SeedCalendar } from './calendar.ts';
+import { seedJuniper } from './juniper.ts';
+import type { Persona } from './persona.ts';
 import type { SeedPeople } from './seed-people.ts';
+import type { SeedWorker } from './seed-worker.ts';
+import { seedTanager } from './tanager.ts';
 
-type DemoEmail = (typeof demoPeople)[number]['email'];
-const nameOf = (email: DemoEmail): string => demoPeople.find((person) => person.email === email)?.name ?? '';
+export type DemoEmail = (typeof demoPeople)[number]['email'];
+const ZONE = 'America/New_York';
 
-const OHIO = 'America/New_York';
-const terms: CreateJob['terms'] = {
-  style: 'percent_complete',
-  contractSumCents: 48_650_000,
-  signedOn: '2026-08-17',
-  startOn: '2026-09-08',
-  completeBy: '2027-06-18',
-  dayKind: 'working',
-  retainageRate: 500,
-  depositCents: 1_500_000,
-  reviewDays: 5,
-  paymentDays: 10,
-  lateRate: 900,
-  homeownersSign: 'all',
-  openBook: false,
-};
+export const demoTerms = (calendar: SeedCalendar): ContractTerms => ({
+  style: 'percent_complete', contractSumCents: 48_650_000, signedOn: calendar.date(-118), startOn: calendar.date(-105), completeBy: calendar.date(190), dayKind: 'working',
+  retainageRate: 500, depositCents: 1_500_000, reviewDays: 5, paymentDays: 10, lateRate: 900, homeownersSign: 'all', openBook: false,
+});
 
-/** The demo's invented people and jobs, made by the acts that people use. */
-export async function seedDemo(app: INestApplicationContext, people: SeedPeople): Promise<void> {
-  const signIn = (email: DemoEmail) => people.signIn(email, nameOf(email));
-
-  people.at('2026-08-14T14:00:00Z');
-  const marit = await signIn('marit@halvorsen-build.example');
-  const firmId = v7();
-  await app.get(FirmsService).start(marit, { id: firmId, name: 'Halvorsen Building Co.', timeZone: OHIO }, v4());
-  const juniper = await createJob(app, marit, { firmId, name: '22 Juniper Hill', street: '22 Juniper Hill', terms });
-  const invite = async (email: DemoEmail, role: JobRole) => {
-    await app.get(PeopleService).invite(marit, juniper, { id: v7(), email, name: nameOf(email), role }, v4());
-    return await signIn(email);
-  };
-  await invite('ines@moreau.example', 'homeowner');
-  await invite('theo@moreau.example', 'homeowner');
-  await invite('ruth@fallbrook-bank.example', 'lender');
-  await invite('omar@haddad-inspection.example', 'inspector');
-  await invite('greta@lindqvist-structural.example', 'designer');
-
-  const sam = await signIn('sam@pruitt-and-daughter.example');
-  const otherFirm = v7();
-  await app.get(FirmsService).start(sam, { id: otherFirm, name: 'Pruitt & Daughter', timeZone: OHIO }, v4());
-  await createJob(app, sam, { firmId: otherFirm, name: '5 Tannery Row', street: '5 Tannery Row', terms: { ...terms, contractSumCents: 21_240_000, depositCents: 0 } });
+/** What the demo's jobs are made with. */
+export interface Stage {
+  calendar: SeedCalendar;
+  worker: SeedWorker;
+  firmId: string;
+  /** The clock stands at this day from now on. */
+  on(day: number, minutes?: number): void;
+  /** Somebody signs in anew: sessions and proofs of presence are as old as the clock says. */
+  as(email: DemoEmail): Promise<Persona>;
+  createJob(principal: Persona, name: string, terms: ContractTerms): Promise<string>;
+  invite(principal: Persona, jobId: string, email: DemoEmail, role: JobRole): Promise<Persona>;
 }
 
-async function createJob(app: INestApplicationContext, actor: Actor, job: { firmId: string; name: string; street: string; terms: CreateJob['terms'] }): Promise<string> {
-  const { firmId, name, street } = job;
+/** The demo's invented firms, people and jobs at different stages, made by the acts that people use. */
+export async function seedDemo(people: SeedPeople, worker: SeedWorker): Promise<void> {
+  const calendar = new SeedCalendar(new Date());
+  const nameOf = (email: DemoEmail) => demoPeople.find((person) => person.email === email)?.name ?? '';
+  const as = (email: DemoEmail) => people.signIn(email, nameOf(email));
+  const on = (day: number, minutes = 0) => people.at(calendar.instant(day, minutes));
+  const createJob = createJobIn(ZONE);
+
+  on(-120);
+  const marit = await as('marit@halvorsen-build.example');
+  const firmId = await startFirm(marit, 'Halvorsen Building Co.');
+  for (const [email, role] of [['dev@halvorsen-build.example', 'manager'], ['lupe@halvorsen-build.example', 'site'], ['wes@halvorsen-build.example', 'books']] as const) await join(marit, firmId, email, nameOf(email), role, as);
+  const stage: Stage = {
+    calendar, worker, firmId, on, as,
+    createJob: (principal, name, terms) => createJob(principal, firmId, name, terms),
+    invite: async (principal, jobId, email, role) => {
+      await principal.post(`jobs/${jobId}/invitations`, { id: v7(), email, name: nameOf(email), role });
+      return await as(email);
+    },
+  };
+  await seedTanager(stage);
+  await seedJuniper(stage);
+
+  on(-1);
+  await stage.createJob(await as('marit@halvorsen-build.example'), '31 Orchard Bend', { ...demoTerms(calendar), contractSumCents: 39_875_000, signedOn: calendar.date(-2), startOn: calendar.date(20), completeBy: calendar.date(260), depositCents: 0 });
+  const sam = await as('sam@pruitt-and-daughter.example');
+  const otherFirm = await startFirm(sam, 'Pruitt & Daughter');
+  await createJob(sam, otherFirm, '5 Tannery Row', { ...demoTerms(calendar), contractSumCents: 21_240_000, depositCents: 0 });
+}
+
+async function startFirm(principal: Persona, name: string): Promise<string> {
   const id = v7();
-  const input = { id, firmId, name, address: { street, city: 'Maple Glen', state: 'OH', zip: '45011' }, timeZone: OHIO, terms: job.terms };
-  await app.get(JobsService).create(actor, input, v4());
+  await principal.post('firms', { id, name, timeZone: ZONE });
   return id;
 }
+
+async function join(principal: Persona, firmId: string, email: DemoEmail, name: string, role: FirmRole, as: (email: DemoEmail) => Promise<Persona>): Promise<void> {
+  await principal.post(`firms/${firmId}/invitations`, { id: v7(), email, name, role });
+  await as(email);
+}
+
+const createJobIn = (timeZone: string) => async (principal: Persona, firmId: string, name: string, terms: ContractTerms): Promise<string> => {
+  const id = v7();
+  await principal.post('jobs', { id, firmId, name, address: { street: name, city: 'Maple Glen', state: 'OH', zip: '45011' }, timeZone, terms });
+  return id;
+};
