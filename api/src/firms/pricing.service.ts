@@ -1,8 +1,10 @@
 import { Injectable } from '@nestjs/common';
+import { priceChange } from '@tallypole/shared/pricing';
 import type { FirmPricing, SetFirmPricing } from '@tallypole/shared/schemas/changes';
 import { requireInFirm } from '../common/access.ts';
 import { Clock } from '../common/clock.ts';
 import { CommandRunner, type Answered } from '../common/command-runner.ts';
+import { computed } from '../common/computed.ts';
 import { Problem } from '../common/problem.ts';
 import { UnitOfWork, type Actor } from '../common/unit-of-work.ts';
 import { FirmsRepository } from './firms.repository.ts';
@@ -33,6 +35,8 @@ export class PricingService {
       input: { firmId, terms, version },
       authorize: (tx) => requireInFirm(tx, 'firm.pricing', firmId),
       act: async (tx) => {
+        // terms that no change can be priced by are refused here, not at the next change
+        computed(() => priceChange({ lines: [], terms }));
         const next = await this.repository.setPricing(tx, firmId, terms, version, this.clock.now());
         if (!next) throw new Problem('stale');
         return next as FirmPricing & Record<string, never>;

@@ -4,6 +4,7 @@ import type { RouteObject } from 'react-router-dom';
 export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
   wide: [
     { path: 'firms/:firmId', lazy: () => import('../features/people/pages/firm-page.tsx') },
+    { path: 'firms/:firmId/pricing', lazy: () => import('../features/changes/pages/firm-pricing-page.tsx') },
     { path: 'lending', lazy: () => import('../features/lender/pages/lending-page.tsx') },
     { path: 'payouts', lazy: () => import('../features/payments/pages/payouts-page.tsx') },
   ],

@@ -1,5 +1,6 @@
 import { Button, Menu, useMantineColorScheme } from '@mantine/core';
 import type { Me } from '@tallypole/shared/schemas/auth';
+import { may } from '@tallypole/shared/schemas/permissions';
 import { useNavigate, Link } from 'react-router-dom';
 import type { ReactNode } from 'react';
 import { signOut } from '../features/auth/api/sign-out.ts';
@@ -54,6 +55,11 @@ function PersonMenu({ me }: { me: Me }) {
         {me.firms.map((firm) => (
           <Menu.Item key={firm.id} onClick={() => void navigate(`/firms/${firm.id}`)}>
             {firm.name}, {firm.role}
+          </Menu.Item>
+        ))}
+        {me.firms.filter(({ role }) => may([role], 'firm.pricing')).map(({ id, name }) => (
+          <Menu.Item key={id} onClick={() => void navigate(`/firms/${id}/pricing`)}>
+            {me.firms.length > 1 ? `${name}: how changes are priced` : 'How changes are priced'}
           </Menu.Item>
         ))}
         <Menu.Item onClick={() => void navigate('/jobs')}>Your jobs</Menu.Item>

@@ -1,5 +1,5 @@
 import { queryOptions } from '@tanstack/react-query';
-import type { Change, ChangeList, FirmPricing } from '@tallypole/shared/schemas/changes';
+import type { Change, ChangeList, FirmPricing, SetFirmPricing } from '@tallypole/shared/schemas/changes';
 import { get, post } from '../../../lib/http.ts';
 
 const PAPER_MS = 1_500;
@@ -16,6 +16,7 @@ export const changeQuery = (jobId: string, changeId: string) =>
   });
 
 export const pricingQuery = (firmId: string) => queryOptions({ queryKey: ['firms', firmId, 'pricing'], queryFn: ({ signal }) => get<FirmPricing>(`firms/${firmId}/pricing`, signal) });
+export const setPricing = (firmId: string, input: SetFirmPricing, idempotencyKey: string): Promise<FirmPricing> => post(`firms/${firmId}/pricing`, input, { idempotencyKey });
 
 export const isOut = ({ state }: Change): boolean => state === 'issued' || state === 'partly_signed';
 const awaitsPaper = (change: Change): boolean => change.chargedCents !== null && ((isOut(change) && change.document === null) || (change.state === 'approved' && change.signedDocument === null));
