@@ -1,9 +1,10 @@
 import react from '@vitejs/plugin-react';
 import { defaultClientConditions } from 'vite';
 import { defineConfig } from 'vitest/config';
+import { buildId } from './build-id.ts';
 
 export default defineConfig({
-  plugins: [react()],
+  plugins: [react(), buildId()],
   // @tallypole/shared straight from its TypeScript
   resolve: { conditions: ['source', ...defaultClientConditions] },
   ssr: { resolve: { conditions: ['source'] } },

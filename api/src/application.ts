@@ -3,6 +3,7 @@ import { SwaggerModule } from '@nestjs/swagger';
 import compression from 'compression';
 import type { NextFunction, Request, Response } from 'express';
 import helmet from 'helmet';
+import { existsSync, readFileSync } from 'node:fs';
 import path from 'node:path';
 import type { Logger } from 'pino';
 import type { Configuration } from './common/configuration.ts';
@@ -23,7 +24,7 @@ const CONTENT_POLICY = {
   'form-action': ["'self'"],
 };
 /** Signed by the sender instead of coming from our pages. */
-export const WEBHOOK_PATH = '/api/payments/webhook';
+const WEBHOOK_PATH = '/api/payments/webhook';
 const YEAR_SECONDS = 31_536_000;
 
 /** Everything between Express and the controllers. */
@@ -41,8 +42,10 @@ export function configure(app: NestExpressApplication, configuration: Configurat
     }),
   );
   app.use(compression());
+  const buildId = buildIdOf(configuration.PORTAL_DIST);
   app.use('/api', (_request: Request, response: Response, next: NextFunction) => {
     response.setHeader('Cache-Control', 'no-store');
+    if (buildId) response.setHeader('Build-Id', buildId);
     next();
   });
   app.use(sameOrigin(configuration.PUBLIC_URL, [WEBHOOK_PATH]));
@@ -51,6 +54,12 @@ export function configure(app: NestExpressApplication, configuration: Configurat
   app.enableShutdownHooks();
   if (configuration.NODE_ENV === 'development') SwaggerModule.setup('api/docs', app, () => openApiDocument(app), { jsonDocumentUrl: 'api/openapi.json' });
   if (configuration.PORTAL_DIST) servePortal(app, configuration.PORTAL_DIST);
+}
+
+/** The build of the pages that this server was started with: repeated in each answer, so that an older page notices that it is one. */
+function buildIdOf(folder: string | undefined): string | undefined {
+  const file = folder ? path.join(folder, 'build-id.txt') : undefined;
+  return file && existsSync(file) ? readFileSync(file, 'utf8').trim() : undefined;
 }
 
 /** The built portal: hashed assets for a year, the page itself never from a cache; unknown paths are the portal's own routes. */

@@ -18,6 +18,7 @@ export const router = createBrowserRouter([
     errorElement: <ErrorPage />,
     children: [
       { index: true, element: <Navigate to="/jobs" replace /> },
+      { path: 'your-name', lazy: () => import('../features/auth/pages/your-name-page.tsx') },
       { path: 'jobs', lazy: () => import('../features/jobs/pages/jobs-page.tsx') },
       { path: 'firms/new', lazy: () => import('../features/auth/pages/start-firm-page.tsx') },
       { path: 'firms/:firmId/jobs/new', lazy: () => import('../features/jobs/pages/create-job-page.tsx') },

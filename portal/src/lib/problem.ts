@@ -1,11 +1,11 @@
 import { problems, type FieldProblem, type ProblemBody, type ProblemCode } from '@tallypole/shared/problems';
 
-/** An error that the server explained, or one that stands for a network that didn't answer. */
+/** An error that the server explained, or one of this side: a network that didn't answer, a page older than the server. */
 export class Problem extends Error {
   override readonly name = 'Problem';
 
   constructor(
-    readonly code: ProblemCode | 'offline',
+    readonly code: ProblemCode | 'offline' | 'outdated',
     message: string,
     readonly status: number,
     readonly errors: readonly FieldProblem[] = [],
@@ -17,7 +17,10 @@ export class Problem extends Error {
 
 const OFFLINE = 'No answer came. Check the connection; what you typed is kept.';
 
+const OUTDATED = 'There is a newer version of this page, so nothing was sent. Load it again and look once more; what you typed is kept.';
+
 export const offline = (): Problem => new Problem('offline', OFFLINE, 0);
+export const outdated = (): Problem => new Problem('outdated', OUTDATED, 409);
 
 /** Reads an error's body; anything that isn't one of ours becomes `failed`. */
 export async function problemOf(response: Response): Promise<Problem> {

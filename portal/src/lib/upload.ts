@@ -1,4 +1,4 @@
-import { get } from './http.ts';
+import { answered } from './http.ts';
 import { offline, Problem, problemOf } from './problem.ts';
 
 export interface Uploading {
@@ -8,12 +8,7 @@ export interface Uploading {
 
 /** Sends a form with a file and tells how far it is; a session that ended is renewed once. Throws Problem. */
 export async function upload<T>(path: string, form: FormData, uploading: Uploading = {}): Promise<T> {
-  let response = await send(path, form, uploading);
-  if (response.status === 401) {
-    // any reading call renews the session
-    await get('me');
-    response = await send(path, form, uploading);
-  }
+  const response = await answered(() => send(path, form, uploading));
   if (!response.ok) throw await problemOf(response);
   return (await response.json()) as T;
 }

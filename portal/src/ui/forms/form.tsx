@@ -47,6 +47,11 @@ function ErrorSummary<Values extends object>({ act }: { act: ActForm<Values> }) 
     <div className={classes['summary']} ref={box} tabIndex={-1} role="alert">
       <h2>There is a problem</h2>
       {act.failure && errors.length === 0 ? <p>{act.failure.message}</p> : null}
+      {act.failure?.code === 'outdated' ? (
+        <Button variant="outline" onClick={() => window.location.reload()}>
+          Load the page again
+        </Button>
+      ) : null}
       {errors.length > 0 ? (
         <ul>
           {errors.map(([path, message]) => (
