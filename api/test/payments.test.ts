@@ -1,5 +1,8 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from '@jest/globals';
 import { randomUUID } from 'node:crypto';
+import { mkdtempSync, readFileSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import path from 'node:path';
 import { v7 } from 'uuid';
 import { afterPaymentStep, paymentStates, paymentTransitions, type PaymentProgress, type PaymentStep } from '@tallypole/shared/schemas/payments';
 import type { Draw } from '@tallypole/shared/schemas/draws';
@@ -29,6 +32,7 @@ describe('the states of a payment', () => {
 });
 
 describe('paying a draw', () => {
+  const counts = path.join(mkdtempSync(path.join(tmpdir(), 'tally-count-')), 'statements');
   let house: House;
   let stripe: StripeStandIn;
   let url: string;
@@ -41,7 +45,7 @@ describe('paying a draw', () => {
   beforeAll(async () => {
     house = await House.open();
     stripe = await StripeStandIn.for(house);
-    await house.worker();
+    await house.worker({ preload: path.join(import.meta.dirname, 'support/count-statements.mjs'), env: { COUNT_SQL: 'update payment set state = $2', COUNT_FILE: counts } });
     ({ url } = await house.web());
     ({ url: second } = await house.web());
     await stripe.start(url);
@@ -51,6 +55,7 @@ describe('paying a draw', () => {
   afterAll(async () => {
     await house.close();
     await stripe.close();
+    rmSync(path.dirname(counts), { recursive: true, force: true });
   });
   beforeEach(async () => {
     lent = await lentJob(house, url, { firm });
@@ -95,6 +100,10 @@ describe('paying a draw', () => {
     const receipt = await house.mail.wait(lent.ann.email, /^Receipt: \$30,000\.00 for Draw 1, 9 Larkspur Court$/);
     expect(receipt.text).toContain('Still open of Draw 1: $95,730.00.');
     await house.mail.wait(lent.principal.email, /^Draw 1, 9 Larkspur Court: \$30,000\.00 received$/);
+    // under way, then settled: each in one transaction of at most 12 statements, however many people are mailed
+    const statements = readFileSync(counts, 'utf8').trim().split('\n').map(Number);
+    expect(statements).toHaveLength(2);
+    expect(Math.max(...statements)).toBeLessThanOrEqual(12);
     const done = await startPayment(lent, lent.ann, draw.id, 3_000_000);
     expect([done.status, code(done)]).toEqual([409, 'wrong_state']);
   });

@@ -43,7 +43,7 @@ export class DrawMails {
   approved(tx: Tx, about: About, figures: DrawFigures, dueOn: string): Promise<void> {
     const lender: Kinds = figures.loanCents > 0 ? { lender: 'draw-to-fund' } : {};
     const blocker = about.draw.reviewState === 'allowed' ? 'You can fund it now.' : 'Your inspection and allowance come before the funding.';
-    const data = { ...this.figures(figures), dueOn: writtenBusinessDate(dueOn, true), dueOnShort: writtenBusinessDate(dueOn), blocker };
+    const data = { ...this.figures(figures), dueOn: writtenBusinessDate(dueOn, true), dueOnShort: writtenBusinessDate(dueOn).replace(/, \d{4}$/, ''), blocker };
     return this.post(tx, about, { ...OFFICE, homeowner: 'draw-approved-homeowner', ...lender }, data);
   }
 
