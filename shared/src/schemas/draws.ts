@@ -99,7 +99,7 @@ const drawFields = {
   submittedAt: Instant.nullable(),
   approvedAt: Instant.nullable(),
 };
-export const DrawRow = z.object(drawFields);
+export const DrawRow = z.object(drawFields).meta({ id: 'DrawRow' });
 export const DrawList = z.object({ items: z.array(DrawRow) });
 
 export const Draw = z.object({
@@ -129,7 +129,7 @@ export const Draw = z.object({
   payments: z.array(Payment),
   /** Whether the reader approved already. */
   approvedByMe: z.boolean(),
-});
+}).meta({ id: 'Draw' });
 
 export type StartDraw = z.infer<typeof StartDraw>;
 export type Redraft = z.infer<typeof Redraft>;

@@ -63,7 +63,7 @@ export const Payment = z.object({
   /** Why it failed or came back, in a sentence. */
   trouble: z.string().nullable(),
   createdAt: Instant,
-});
+}).meta({ id: 'Payment' });
 /** One payment of mine while it is made: where to go, or what became of it. */
 export const PaymentProgress = z.object({
   payment: Payment,
