@@ -65,7 +65,7 @@ describe('a draw in a browser, from draft to paid', () => {
     const office = await at(lent.principal, desk);
     await office.signIn(draws);
     await look(office, 'draws-empty');
-    await office.fill('Work through', '11/30/2026');
+    await office.page.getByLabel('Work through', { exact: true }).fill('11/30/2026');
     await office.press('Draft the next draw');
     await office.sees('Draw 1');
     const sheet = office.page.getByRole('grid', { name: 'Draw 1' });
