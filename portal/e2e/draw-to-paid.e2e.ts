@@ -64,6 +64,7 @@ describe('a draw in a browser, from draft to paid', () => {
     const draws = `/jobs/${lent.job.id}/draws`;
     const office = await at(lent.principal, desk);
     await office.signIn(draws);
+    await office.sees('A draw is drafted from what is proven');
     await look(office, 'draws-empty');
     await office.page.getByLabel('Work through', { exact: true }).fill('11/30/2026');
     await office.press('Draft the next draw');
@@ -165,6 +166,7 @@ describe('a draw in a browser, from draft to paid', () => {
     const firm = await principalWithFirm(house, url);
     const principal = await at(firm.principal, phone);
     await principal.signIn('/payouts');
+    await principal.page.getByRole('button', { name: 'Set up payments' }).waitFor();
     await look(principal, 'payouts');
     await principal.press('Set up payments');
     await principal.page.getByRole('link', { name: 'Go on at the payment service' }).click();
