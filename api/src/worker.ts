@@ -26,7 +26,7 @@ await startOrExplain(async () => {
     events: sweep.events,
     taskList: tasks(app, mailer),
     logger: new QueueLogger(() => (level, message, meta) => {
-      if (level === 'error') logger.error({ meta: { job: (meta as { job?: { id?: string } } | undefined)?.job?.id } }, message);
+      if ((level as string) === 'error') logger.error({ meta: { job: (meta as { job?: { id?: string } } | undefined)?.job?.id } }, message);
       else logger.debug(message);
     }),
   });

@@ -16,7 +16,7 @@ export function seedWorker(app: INestApplicationContext, { QUEUE_URL }: Configur
   const { lapse_change: lapse, ...papers } = changeTasks(app);
   const taskList: TaskList = { ...photoTasks(app), ...papers };
   const logger = new Logger(() => (level, message) => {
-    if (level === 'error') console.error(message);
+    if ((level as string) === 'error') console.error(message);
   });
   return {
     work: () => runOnce({ connectionString: QUEUE_URL, taskList, logger, noPreparedStatements: true }),
