@@ -16,6 +16,11 @@ const ChangeId = () => Param('changeId', { schema: Id });
 export class ChangeActsController {
   constructor(private readonly acts: ChangeActsService) {}
 
+  @Post('ask-review') @HttpCode(200) @Route('change.price', 'write') @ApiIdempotencyKey() @ApiOkResponse({ standardSchema: S.Change })
+  async askReview(@CurrentActor() actor: Actor, @JobId() jobId: string, @ChangeId() changeId: string, @Body({ schema: S.AskReview }) body: S.AskReview, @IdempotencyKey() key: string, @Res({ passthrough: true }) response: Response): Promise<S.Change> {
+    return answer(response, await this.acts.askReview(actor, jobId, changeId, body, key));
+  }
+
   @Post('reviews') @HttpCode(200) @Route('change.review', 'write') @ApiIdempotencyKey() @ApiOkResponse({ standardSchema: S.Change })
   async review(@CurrentActor() actor: Actor, @JobId() jobId: string, @ChangeId() changeId: string, @Body({ schema: S.AttachReview }) body: S.AttachReview, @IdempotencyKey() key: string, @Res({ passthrough: true }) response: Response): Promise<S.Change> {
     return answer(response, await this.acts.review(actor, jobId, changeId, body, key));

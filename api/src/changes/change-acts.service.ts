@@ -1,17 +1,19 @@
 import { Injectable } from '@nestjs/common';
 import { v7 } from 'uuid';
-import { formatChange, sum } from '@tallypole/shared/money';
+import { formatChange, formatMoney, sum } from '@tallypole/shared/money';
 import { mayChange, type ChangeAct } from '@tallypole/shared/schemas/change-states';
-import type { AttachReview, Change, IssueChange, SignChange } from '@tallypole/shared/schemas/changes';
+import type { AskReview, AttachReview, Change, IssueChange, SignChange } from '@tallypole/shared/schemas/changes';
 import { Presence } from '../auth/presence.ts';
 import { Clock } from '../common/clock.ts';
 import type { Answered } from '../common/command-runner.ts';
 import { Problem } from '../common/problem.ts';
 import type { Actor, Tx } from '../common/unit-of-work.ts';
+import { writtenBusinessDate } from '../common/written-date.ts';
+import { DocumentsRepository } from '../documents/documents.repository.ts';
 import { FilesRepository } from '../files/files.repository.ts';
 import { QueueRepository } from '../queue/queue.repository.ts';
 import { RecordRepository } from '../record/record.repository.ts';
-import { effectOf, type ChangeFacts } from './change-facts.ts';
+import { agreedIn, effectOf, type AgreedEffect, type ChangeFacts } from './change-facts.ts';
 import { ChangeMails } from './change-mails.ts';
 import { ChangesRepository } from './changes.repository.ts';
 import { ChangesService } from './changes.service.ts';
@@ -26,6 +28,7 @@ export class ChangeActsService {
     private readonly repository: ChangesRepository,
     private readonly signing: SigningRepository,
     private readonly files: FilesRepository,
+    private readonly documents: DocumentsRepository,
     private readonly presence: Presence,
     private readonly record: RecordRepository,
     private readonly queue: QueueRepository,
@@ -33,11 +36,28 @@ export class ChangeActsService {
     private readonly clock: Clock,
   ) {}
 
+  /** Asks the job's designers to look at it; from then on they see it, without its price. */
+  askReview(actor: Actor, jobId: string, changeId: string, { version }: AskReview, key: string): Promise<Answered<Change>> {
+    return this.changes.run(actor, jobId, { operation: 'change.ask_review', key, input: { changeId, version }, permission: 'change.price' }, async (tx) => {
+      const facts = await this.ready(tx, jobId, changeId, 'ask_review');
+      const { change, job } = facts;
+      if (change.version !== version) throw new Problem('stale', { version: change.version });
+      const designers = await this.repository.designers(tx, jobId);
+      if (designers.length === 0) throw new Problem('rule_broken', { detail: 'No designer is on this job yet: invite one first, or attach the review yourself.' });
+      await this.repository.setState(tx, changeId, 'in_review');
+      await this.mails.toReview(tx, facts, designers);
+      await this.record.append(tx, { firmId: job.firmId, jobId, chain: 'firm', act: 'change.review_asked', by: actor.personId, data: { change: changeId, number: change.number, designers } });
+      return changeId;
+    });
+  }
+
   review(actor: Actor, jobId: string, changeId: string, review: AttachReview, key: string): Promise<Answered<Change>> {
     return this.changes.run(actor, jobId, { operation: 'change.review', key, input: { changeId, ...review }, permission: 'change.review' }, async (tx) => {
       const { change, job } = await this.ready(tx, jobId, changeId, 'review');
       const file = await this.files.find(tx, jobId, review.fileId);
-      if (!file) throw Problem.field('/fileId', 'Attach the file first.');
+      // a file that only the firm may open would be a review that the homeowner can't read
+      if (file?.purpose !== 'review') throw Problem.field('/fileId', 'Attach the file of the review first.');
+      if (review.reviewedOn > this.clock.today(job.timeZone)) throw Problem.field('/reviewedOn', 'The review must have happened already.');
       await this.repository.addReview(tx, { firmId: job.firmId, jobId, changeId }, review, this.clock.now());
       const data = { change: changeId, number: change.number, kind: review.kind, file: review.fileId, sha256: file.sha256, reviewedOn: review.reviewedOn };
       await this.record.append(tx, { firmId: job.firmId, jobId, act: 'change.reviewed', by: actor.personId, data });
@@ -67,7 +87,8 @@ export class ChangeActsService {
     return this.changes.run(actor, jobId, { operation: 'change.sign', key, input: { changeId, ...signature }, permission: 'change.decide' }, async (tx) => {
       await this.presence.require(tx, actor);
       const facts = await this.changes.locked(tx, jobId, changeId);
-      this.checkSignable(facts, actor, signature);
+      this.checkSignable(facts, actor);
+      await this.checkShown(tx, facts, signature);
       const { job, change, signers } = facts;
       const of = { firmId: job.firmId, jobId, changeId };
       const now = this.clock.now();
@@ -117,8 +138,12 @@ export class ChangeActsService {
     return facts;
   }
 
-  private async checkIssuable(tx: Tx, { change, job, lines, reviews, signers }: ChangeFacts): Promise<void> {
-    if (change.structural && reviews.length === 0) throw new Problem('review_missing');
+  private async checkIssuable(tx: Tx, facts: ChangeFacts): Promise<void> {
+    const { change, job, lines, reviews, signers } = facts;
+    if (change.structural && !reviews.some(({ current }) => current)) {
+      throw new Problem('review_missing', reviews.length === 0 ? {} : { detail: 'What is built was altered after the review. Attach one for what it is now.' });
+    }
+    checkBilled(facts);
     if (lines.length === 0 && change.days === 0) throw Problem.field('/lines', 'Enter at least one line, or days.');
     if (change.goodUntil <= this.clock.today(job.timeZone)) throw Problem.field('/goodUntil', 'The price must hold until a day to come.');
     if (signers.length === 0) throw new Problem('rule_broken', { detail: 'Nobody can sign yet: invite the homeowners first.' });
@@ -127,7 +152,7 @@ export class ChangeActsService {
     }
   }
 
-  private checkSignable(facts: ChangeFacts, actor: Actor, signature: SignChange): void {
+  private checkSignable(facts: ChangeFacts, actor: Actor): void {
     const { change, job, document, signers, supersededBy } = facts;
     if (supersededBy) {
       throw new Problem('effect_changed', { detail: `Revision ${supersededBy.revision} has taken its place: ${formatChange(supersededBy.chargedCents)} instead of ${formatChange(change.chargedCents)}.` });
@@ -136,10 +161,17 @@ export class ChangeActsService {
     if (!mayChange(change.state, 'sign_last')) throw new Problem('wrong_state', { detail: `This change is ${change.state.replace('_', ' ')}.` });
     if (this.clock.today(job.timeZone) > change.goodUntil) throw new Problem('wrong_state', { detail: 'The price held until a day that is over. Ask for it again.' });
     if (!document) throw new Problem('wrong_state', { detail: 'The paper is still being made. Try again in a moment.' });
-    const { hash } = effectOf(facts);
-    if (signature.effectHash !== hash || change.effectHash !== hash || signature.documentSha256 !== document.sha256) {
-      throw new Problem('effect_changed', { detail: `What signing does has changed since you opened it. It is now ${formatChange(change.chargedCents)} and ${change.days} days. Look at it again before you decide.` });
-    }
+    checkBilled(facts);
+  }
+
+  /** What was shown is what is signed; where it isn't, both versions are named. */
+  private async checkShown(tx: Tx, facts: ChangeFacts, signature: SignChange): Promise<void> {
+    const { change, document } = facts;
+    const { effect, hash } = effectOf(facts);
+    if (signature.effectHash === hash && change.effectHash === hash && signature.documentSha256 === document?.sha256) return;
+    const shown = agreedIn((await this.documents.effectShown(tx, change.id, signature.documentSha256)) ?? null);
+    const was = shown ? `You were shown ${inWords(shown)}. ` : '';
+    throw new Problem('effect_changed', { detail: `What signing does has changed since you opened it. ${was}It is now ${inWords(effect)}. Look at it again before you decide.` });
   }
 
   /** The last signature: the contract moves, the change becomes lines, others that are out are asked for again, and the papers are joined. */
@@ -155,3 +187,15 @@ export class ChangeActsService {
     await this.queue.enqueue(tx, 'join_change', { firmId: job.firmId, jobId: job.id, changeId: change.id }, { key: `join_change:${change.id}` });
   }
 }
+
+/** Nothing is billed past the contract sum, so it can't be taken below what is billed already. */
+function checkBilled(facts: ChangeFacts): void {
+  const { after } = effectOf(facts).effect;
+  const { billedToDateCents } = facts.job;
+  if (after.contractSumCents < billedToDateCents) {
+    throw new Problem('rule_broken', { detail: `The contract sum would be ${formatMoney(after.contractSumCents)}, but ${formatMoney(billedToDateCents)} is billed already.` });
+  }
+}
+
+const inWords = ({ change, after }: AgreedEffect): string =>
+  `${formatChange(change.chargedCents)} and ${change.days === 1 ? '1 day' : `${change.days} days`}, with a contract sum of ${formatMoney(after.contractSumCents)} and completion by ${writtenBusinessDate(after.completionDate)}`;

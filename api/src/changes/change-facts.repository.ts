@@ -1,9 +1,10 @@
 import { Injectable } from '@nestjs/common';
 import type { Tx } from '../common/unit-of-work.ts';
+import { NEXT_DRAW } from '../draws/next-draw.repository.ts';
 import type { ChangeFacts } from './change-facts.ts';
 
 const instant = (column: string) => `to_char(${column} at time zone 'utc', 'YYYY-MM-DD"T"HH24:MI:SS.MS"Z"')`;
-const paper = (column: string) => `(select json_build_object('id', d.id, 'sha256', d.sha256, 'storageKey', d.storage_key) from document d where d.id = ${column})`;
+const paper = (column: string) => `(select json_build_object('id', d.id, 'sha256', d.sha256, 'storageKey', d.storage_key, 'effect', d.effect) from document d where d.id = ${column})`;
 
 @Injectable()
 export class ChangeFactsRepository {
@@ -15,10 +16,12 @@ export class ChangeFactsRepository {
 // earned = what was billed less what is held back, as the ledger has it
 const EARNED = /* sql */ `(select coalesce(-sum(l.amount_cents), 0)::bigint from ledger_line l where l.job_id = j.id and l.account in ('billed_work', 'retainage_receivable'))`;
 
+const BILLED = /* sql */ `(select coalesce(-sum(l.amount_cents), 0)::bigint from ledger_line l where l.job_id = j.id and l.account = 'billed_work')`;
+
 const JOB = /* sql */ `json_build_object('id', j.id, 'firmId', j.firm_id, 'firmName', f.name, 'name', j.name,
   'place', j.street || ', ' || j.city || ', ' || j.state || ' ' || j.zip, 'timeZone', j.time_zone,
   'contractSumCents', j.contract_sum_cents, 'changesApprovedCents', j.changes_approved_cents, 'completeBy', j.complete_by, 'dayKind', j.day_kind,
-  'daysApproved', j.days_approved, 'homeownersSign', j.homeowners_sign, 'earnedToDateCents', ${EARNED},
+  'daysApproved', j.days_approved, 'homeownersSign', j.homeowners_sign, 'earnedToDateCents', ${EARNED}, 'billedToDateCents', ${BILLED},
   'hasLoan', exists (select 1 from loan o where o.job_id = j.id), 'consentLimitCents', (select o.consent_limit_cents from loan o where o.job_id = j.id))`;
 
 const CHANGE = /* sql */ `json_build_object('id', c.id, 'number', c.number, 'revision', c.revision, 'state', c.state, 'title', c.title, 'reason', c.reason,
@@ -29,8 +32,12 @@ const CHANGE = /* sql */ `json_build_object('id', c.id, 'number', c.number, 'rev
 const LINES = /* sql */ `(select coalesce(json_agg(json_build_object('description', l.description, 'effect', l.effect, 'cents', l.cents) order by l.position), '[]')
   from change_line l where l.change_id = c.id)`;
 
+const SCOPE = /* sql */ `(select coalesce(json_agg(json_build_object('description', s.description, 'effect', s.effect, 'quantity', s.quantity, 'unit', s.unit) order by s.position), '[]')
+  from change_scope s where s.change_id = c.id)`;
+
 const REVIEWS = /* sql */ `(select coalesce(json_agg(json_build_object('id', r.id, 'kind', r.kind, 'fileId', r.file_id, 'fileName', x.name, 'fileSha256', x.sha256,
-    'reviewerName', r.reviewer_name, 'license', r.license, 'reviewedOn', r.reviewed_on, 'note', r.note) order by r.at, r.id), '[]')
+    'reviewerName', r.reviewer_name, 'license', r.license, 'reviewedOn', r.reviewed_on, 'note', r.note,
+    'current', r.scope_sha256 = c.scope_sha256) order by r.at, r.id), '[]')
   from change_review r join file x on x.id = r.file_id where r.change_id = c.id)`;
 
 const SIGNERS = /* sql */ `(select coalesce(json_agg(json_build_object('personId', h.person_id, 'name', coalesce(p.name, p.email), 'email', p.email,
@@ -47,8 +54,10 @@ const SUPERSEDED_BY = /* sql */ `(select json_build_object('id', n.id, 'revision
 const COST = /* sql */ `(select json_build_object('lines', k.lines, 'terms', k.terms, 'ownTerms', k.own_terms, 'termsReason', k.terms_reason)
   from change_cost k where k.change_id = c.id)`;
 
+const AUTHOR = /* sql */ `(select json_build_object('name', coalesce(p.name, p.email), 'email', p.email) from person p where p.id = c.created_by)`;
+
 const FACTS = /* sql */ `
-  select json_build_object('job', ${JOB}, 'change', ${CHANGE}, 'lines', ${LINES}, 'reviews', ${REVIEWS}, 'signers', ${SIGNERS},
-    'document', ${paper('c.document_id')}, 'signedDocument', ${paper('c.signed_document_id')}, 'supersededBy', ${SUPERSEDED_BY}, 'cost', ${COST}) as facts
+  select json_build_object('job', ${JOB}, 'change', ${CHANGE}, 'lines', ${LINES}, 'scope', ${SCOPE}, 'reviews', ${REVIEWS}, 'signers', ${SIGNERS}, 'author', ${AUTHOR},
+    'document', ${paper('c.document_id')}, 'signedDocument', ${paper('c.signed_document_id')}, 'supersededBy', ${SUPERSEDED_BY}, 'cost', ${COST}, 'next', ${NEXT_DRAW}) as facts
   from change c join job j on j.id = c.job_id join firm f on f.id = j.firm_id left join milestone m on m.id = c.milestone_id
   where c.job_id = $1 and c.id = $2`;

@@ -3,19 +3,21 @@ import type { Content } from 'pdfmake/interfaces.js';
 import { writtenBusinessDate, writtenDate } from '../common/written-date.ts';
 import { beforeAfter, ruledTable } from '../documents/tables.ts';
 import type { Paper } from '../documents/pdf.ts';
-import { changeName, effectOf, type ChangeFacts, type SignerFact } from './change-facts.ts';
-import { fundingWords, reviewWords, structuralCaution } from './words.ts';
+import { changeName, effectOf, nextDrawOf, type ChangeFacts, type SignerFact } from './change-facts.ts';
+import { fundingWords, nextDrawName, reviewWords, structuralCaution } from './words.ts';
 
 const days = (count: number) => (count === 1 ? '1 day' : `${count} days`);
 
 /** What the homeowners sign: the reason, what differs, the whole effect, the reviews. */
-export function changePaper(facts: ChangeFacts): Paper {
-  const { job, change, lines, reviews } = facts;
+export function changePaper(facts: ChangeFacts, today: string): Paper {
+  const { job, change, lines, scope, reviews } = facts;
   const { effect, hash } = effectOf(facts);
   const { before, after } = effect;
+  const next = nextDrawOf(facts, today);
   const effects = [
     { name: 'Contract sum', before: formatMoney(before.contractSumCents), after: formatMoney(after.contractSumCents) },
     { name: 'Finished by', before: writtenBusinessDate(before.completionDate), after: writtenBusinessDate(after.completionDate) },
+    ...(next ? [{ name: nextDrawName(change), before: formatMoney(next.before.dueNowCents), after: formatMoney(next.after.dueNowCents) }] : []),
   ];
   const content: Content[] = [
     { text: `${changeName(change)}: ${change.title}`, style: 'title' },
@@ -23,19 +25,27 @@ export function changePaper(facts: ChangeFacts): Paper {
     { text: 'Why', style: 'heading' },
     { text: change.reason },
     { text: 'What differs', style: 'heading' },
+    // however the price is shown, what is built is said
+    ...(change.presentation !== 'itemized' && scope.length > 0 ? [scopeTable(scope)] : []),
     lines.length > 0
       ? ruledTable(['', ''], [...lines.map((line) => [line.description, formatChange(line.cents)]), ['Price of the change', formatChange(change.chargedCents)]], ['*', 'auto'])
       : { text: `No price; time alone: ${days(change.days)}.` },
     { text: 'What it does', style: 'heading' },
     beforeAfter(effects),
+    ...(next ? [{ text: `The draw is worked out from what is proven and owed on ${writtenBusinessDate(today)}; it is no part of what is agreed.`, style: 'small', margin: [0, 4, 0, 0] } satisfies Content] : []),
     { text: `Who pays it: ${fundingWords[effect.funding]}.${effect.needsLendersWord ? ' The sum is above what may be agreed without the lender.' : ''}`, margin: [0, 8, 0, 0] },
     ...(change.milestoneName ? [{ text: `It lands on the milestone "${change.milestoneName}".` }] : []),
-    ...(change.structural ? structural(reviews) : []),
+    ...(change.structural ? structural(reviews.filter(({ current }) => current)) : []),
     { text: 'By signing, the homeowners agree to the change above, its price and its days, as an addition to the contract. Everything else in the contract stays as it is.', margin: [0, 18, 0, 0] },
     { text: `Effect ${hash}`, style: 'small', margin: [0, 10, 0, 0] },
   ];
   return { title: `${changeName(change)}, ${job.name}`, head: `${job.firmName} · ${job.name}, ${job.place}`, foot: `${changeName(change)}`, content };
 }
+
+const scopeTable = (scope: ChangeFacts['scope']): Content => ({
+  margin: [0, 0, 0, 10],
+  stack: [ruledTable(['', 'quantity'], scope.map(({ description, effect, quantity, unit }) => [`${effect === 'deduct' ? 'Taken out: ' : ''}${description}`, `${quantity} ${unit}`]), ['*', 'auto'])],
+});
 
 function structural(reviews: ChangeFacts['reviews']): Content[] {
   const rows = reviews.map((review) => [

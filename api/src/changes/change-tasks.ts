@@ -61,16 +61,16 @@ class ChangePapers {
   async render(job: ChangeJob): Promise<void> {
     const facts = await this.read(job);
     if (!facts || !mayChange(facts.change.state, 'sign_last') || facts.document) return;
-    const { hash } = effectOf(facts);
-    const stored = await this.store(job, await renderPaper(changePaper(facts)), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
+    const { text, hash } = effectOf(facts);
+    const stored = await this.store(job, await renderPaper(changePaper(facts, this.clock.today(facts.job.timeZone))), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
     await this.work.writeAsFirm(job.firmId, async (tx, systemPerson) => {
       const now = await this.lock(tx, job);
       if (!mayChange(now.change.state, 'sign_last') || now.document) return;
       // somebody signed another change meanwhile: this paper is outdated, the next try makes a new one
       if (effectOf(now).hash !== hash) throw new Error('The effect moved while its paper was made.');
-      await this.documents.add(tx, { ...job, ...stored, kind: 'change', subjectId: job.changeId, createdAt: this.clock.now() });
+      await this.documents.add(tx, { ...job, ...stored, kind: 'change', subjectId: job.changeId, agreed: { text, hash }, createdAt: this.clock.now() });
       await this.papers.setDocument(tx, job.changeId, stored.id, hash);
-      await this.mails.issued(tx, now);
+      await this.mails.issued(tx, now, this.clock.today(now.job.timeZone));
       await this.record.append(tx, { ...job, act: 'change.paper_made', by: systemPerson, data: { change: job.changeId, document: stored.id, sha256: stored.sha256, effectHash: hash } });
     });
   }
@@ -87,7 +87,7 @@ class ChangePapers {
     await this.work.writeAsFirm(job.firmId, async (tx, systemPerson) => {
       const now = await this.lock(tx, job);
       if (now.signedDocument) return;
-      await this.documents.add(tx, { ...job, ...stored, kind: 'signed_change', subjectId: job.changeId, createdAt: this.clock.now() });
+      await this.documents.add(tx, { ...job, ...stored, kind: 'signed_change', subjectId: job.changeId, agreed: null, createdAt: this.clock.now() });
       await this.papers.setSignedDocument(tx, job.changeId, stored.id);
       await this.mails.approved(tx, now, await this.papers.lenders(tx, job.jobId), stored.id, stored.sha256);
       if (now.cost) {

@@ -4,7 +4,7 @@ import type { ChangeState } from '@tallypole/shared/schemas/change-states';
 import { changeStates } from '@tallypole/shared/schemas/change-states';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { firmRoles, type Role } from '@tallypole/shared/schemas/roles';
-import { effectOf, snapshotOf, type ChangeFacts } from './change-facts.ts';
+import { agreedIn, effectOf, nextDrawOf, snapshotOf, type ChangeFacts } from './change-facts.ts';
 import { costOf } from './pricing-draft.ts';
 
 const inFirm = (roles: readonly Role[]): boolean => roles.some((role) => (firmRoles as readonly Role[]).includes(role));
@@ -17,19 +17,19 @@ export function visibleStates(roles: readonly Role[]): ChangeState[] {
 }
 
 /** A change as somebody may see it: prices, cost and addresses only where their role includes them. */
-export function changeView(facts: ChangeFacts, roles: readonly Role[], personId: string): Change {
+export function changeView(facts: ChangeFacts, roles: readonly Role[], { personId, today }: { personId: string; today: string }): Change {
   const { change, job } = facts;
   const { effectHash, closedReason, createdBy: _createdBy, chargedCents, ...row } = change;
   const prices = may(roles, 'money.read');
-  const { effect } = effectOf(facts);
+  // once signed, what was agreed is read from the paper; before, it follows from the job as it is
   const open = change.state !== 'approved';
   return {
     ...row,
     chargedCents: prices ? chargedCents : null,
     lines: prices ? facts.lines : [],
+    scope: facts.scope,
     reviews: facts.reviews,
-    effect: prices && open ? { before: effect.before, after: effect.after, funding: effect.funding, needsLendersWord: effect.needsLendersWord } : null,
-    steps: prices && open ? changeSteps(snapshotOf(facts)) : null,
+    ...(prices && open ? openEffect(facts, today) : { effect: prices ? agreedEffect(facts) : null, steps: null }),
     effectHash: prices ? effectHash : null,
     document: paper(prices, facts.document),
     signedDocument: paper(prices, facts.signedDocument),
@@ -41,4 +41,22 @@ export function changeView(facts: ChangeFacts, roles: readonly Role[], personId:
   };
 }
 
+function openEffect(facts: ChangeFacts, today: string): Pick<Change, 'effect' | 'steps'> {
+  const { before, after, funding, needsLendersWord } = effectOf(facts).effect;
+  const next = nextDrawOf(facts, today);
+  const sums = next && { before: figuresOf(next.before), after: figuresOf(next.after) };
+  return {
+    effect: { before, after, funding, needsLendersWord, nextDraw: sums },
+    steps: { ...changeSteps(snapshotOf(facts)), nextDraw: next?.after.steps.dueNow ?? null, homeowner: next?.after.steps.homeowner ?? null },
+  };
+}
+
+function agreedEffect(facts: ChangeFacts): Change['effect'] {
+  const agreed = agreedIn(facts.document);
+  if (!agreed) return null;
+  const { before, after, funding, needsLendersWord } = agreed;
+  return { before: { ...before, leftToBillCents: null }, after: { ...after, leftToBillCents: null }, funding, needsLendersWord, nextDraw: null };
+}
+
+const figuresOf = ({ dueNowCents, homeownerCents, loanCents }: { dueNowCents: number; homeownerCents: number; loanCents: number }) => ({ dueNowCents, homeownerCents, loanCents });
 const paper = (shown: boolean, document: ChangeFacts['document']) => (shown && document ? { id: document.id, sha256: document.sha256 } : null);

@@ -15,6 +15,8 @@ export interface PricedDraft extends Omit<DraftChange, 'terms' | 'id'> {
   terms: PricingTermsInput;
   ownTerms: boolean;
   chargedCents: number;
+  /** What a review looks at: changes with what is built, not with its price. */
+  scopeSha256: string;
   ownersLines: readonly OwnersLine[];
 }
 
@@ -35,7 +37,7 @@ export class ChangesRepository {
   async insert(tx: Tx, { firmId, jobId, changeId }: OfChange, numbered: { number: number; revision: string }, draft: PricedDraft, now: Date): Promise<void> {
     await tx.rows(
       `insert into change (firm_id, job_id, id, number, revision, title, reason, origin, structural, presentation, no_charge, charged_cents, days, milestone_id,
-         good_until, created_by, created_at) values ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10, $11, $12, $13, $14, $15, app.actor(), $16)`,
+         good_until, scope_sha256, created_by, created_at) values ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10, $11, $12, $13, $14, $15, $16, app.actor(), $17)`,
       [firmId, jobId, changeId, numbered.number, numbered.revision, ...fields(draft), now],
     );
     await this.setParts(tx, { firmId, jobId, changeId }, draft);
@@ -45,7 +47,7 @@ export class ChangesRepository {
   async edit(tx: Tx, of: OfChange, version: number, draft: PricedDraft): Promise<boolean> {
     const row = await tx.one(
       `update change set state = 'draft', title = $3, reason = $4, origin = $5, structural = $6, presentation = $7, no_charge = $8, charged_cents = $9, days = $10,
-         milestone_id = $11, good_until = $12, version = version + 1 where id = $1 and version = $2 returning id`,
+         milestone_id = $11, good_until = $12, scope_sha256 = $13, version = version + 1 where id = $1 and version = $2 returning id`,
       [of.changeId, version, ...fields(draft)],
     );
     if (!row) return false;
@@ -60,6 +62,12 @@ export class ChangesRepository {
        select $1, $2, $3, l.position, l.value->>'description', l.value->>'effect', (l.value->>'cents')::bigint from jsonb_array_elements($4::jsonb) with ordinality as l (value, position)`,
       [firmId, jobId, changeId, JSON.stringify(draft.ownersLines)],
     );
+    await tx.rows('delete from change_scope where change_id = $1', [changeId]);
+    await tx.rows(
+      `insert into change_scope (firm_id, job_id, change_id, position, description, effect, quantity, unit)
+       select $1, $2, $3, l.position, l.value->>'description', l.value->>'effect', l.value->>'quantity', l.value->>'unit' from jsonb_array_elements($4::jsonb) with ordinality as l (value, position)`,
+      [firmId, jobId, changeId, JSON.stringify(draft.lines.filter((line) => line.class !== 'labor' && line.class !== 'fee'))],
+    );
     await tx.rows(
       `insert into change_cost (firm_id, job_id, change_id, lines, terms, own_terms, terms_reason) values ($1, $2, $3, $4::jsonb, $5::jsonb, $6, $7)
        on conflict (change_id) do update set lines = excluded.lines, terms = excluded.terms, own_terms = excluded.own_terms, terms_reason = excluded.terms_reason`,
@@ -69,8 +77,8 @@ export class ChangesRepository {
 
   async addReview(tx: Tx, { firmId, jobId, changeId }: OfChange, review: AttachReview, now: Date): Promise<void> {
     await tx.rows(
-      `insert into change_review (firm_id, job_id, id, change_id, kind, file_id, reviewer_name, license, reviewed_on, note, by_person, at)
-       values ($1, $2, $3, $4, $5, $6, $7, $8, $9, $10, app.actor(), $11)`,
+      `insert into change_review (firm_id, job_id, id, change_id, kind, file_id, reviewer_name, license, reviewed_on, note, by_person, at, scope_sha256)
+       select $1, $2, $3, c.id, $5, $6, $7, $8, $9, $10, app.actor(), $11, c.scope_sha256 from change c where c.id = $4`,
       [firmId, jobId, review.id, changeId, review.kind, review.fileId, review.reviewerName, review.license, review.reviewedOn, review.note, now],
     );
     await tx.rows(`update change set state = 'in_review', version = version + 1 where id = $1`, [changeId]);
@@ -103,9 +111,14 @@ export class ChangesRepository {
     return (await tx.one<{ terms: PricingTermsInput }>('select p.terms from firm_pricing p join job j on j.firm_id = p.firm_id where j.id = $1', [jobId]))?.terms;
   }
 
+  async designers(tx: Tx, jobId: string): Promise<string[]> {
+    const rows = await tx.rows<{ id: string }>(`select person_id as id from job_member where job_id = $1 and role = 'designer' and ended_at is null`, [jobId]);
+    return rows.map(({ id }) => id);
+  }
+
   async milestoneState(tx: Tx, jobId: string, milestoneId: string): Promise<string | undefined> {
     return (await tx.one<{ state: string }>('select state from milestone where job_id = $1 and id = $2', [jobId, milestoneId]))?.state;
   }
 }
 
-const fields = (d: PricedDraft): unknown[] => [d.title, d.reason, d.origin, d.structural, d.presentation, d.noCharge, d.chargedCents, d.days, d.milestoneId, d.goodUntil];
+const fields = (d: PricedDraft): unknown[] => [d.title, d.reason, d.origin, d.structural, d.presentation, d.noCharge, d.chargedCents, d.days, d.milestoneId, d.goodUntil, d.scopeSha256];

@@ -117,7 +117,7 @@ export class ChangesService {
   private async view(tx: Tx, actor: Actor, jobId: string, changeId: string, roles: readonly Role[]): Promise<Change> {
     const facts = await this.facts.find(tx, jobId, changeId);
     if (!facts || !visibleStates(roles).includes(facts.change.state)) throw new Problem('not_found');
-    return changeView(facts, roles, actor.personId);
+    return changeView(facts, roles, { personId: actor.personId, today: this.clock.today(facts.job.timeZone) });
   }
 
   private async terms(tx: Tx, jobId: string) {

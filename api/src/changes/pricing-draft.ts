@@ -1,6 +1,7 @@
 import { InvalidInput } from '@tallypole/shared/arithmetic';
 import { ownersView, priceChange } from '@tallypole/shared/pricing';
 import type { ChangeCost, DraftChange, PricingTermsInput } from '@tallypole/shared/schemas/changes';
+import { canonicalHash } from '../common/canonical.ts';
 import { Problem } from '../common/problem.ts';
 import type { PricedDraft } from './changes.repository.ts';
 
@@ -10,7 +11,13 @@ export function priceDraft(draft: Omit<DraftChange, 'id'>, firmTerms: PricingTer
   if (draft.terms !== null && draft.termsReason.trim() === '') throw Problem.field('/termsReason', "Say why these terms differ from the firm's.");
   const priced = price(draft, terms);
   const ownersLines = draft.lines.length === 0 ? [] : ownersView(draft.lines, priced, draft.noCharge ? 'one_sum' : draft.presentation, draft.title);
-  return { ...draft, terms, ownTerms: draft.terms !== null, chargedCents: priced.chargedCents, ownersLines };
+  return { ...draft, terms, ownTerms: draft.terms !== null, chargedCents: priced.chargedCents, scopeSha256: scopeOf(draft), ownersLines };
+}
+
+/** What is built, as a reviewer looks at it: title and members with their quantities. Hours, fees, prices and terms may move without another review. */
+function scopeOf({ title, lines }: Pick<DraftChange, 'title' | 'lines'>): string {
+  const members = lines.filter((line) => line.class !== 'labor' && line.class !== 'fee').map((line) => ({ class: line.class, effect: line.effect, description: line.description, quantity: line.quantity, unit: line.unit }));
+  return canonicalHash({ title, members });
 }
 
 function price(draft: Pick<DraftChange, 'lines' | 'noCharge'>, terms: PricingTermsInput) {

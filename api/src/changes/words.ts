@@ -8,6 +8,9 @@ export const fundingWords: Readonly<Record<Funding, string>> = {
   less_to_pay: 'less is to be paid',
 };
 
+/** The first draw in which a change is asked for. */
+export const nextDrawName = ({ milestoneName }: { milestoneName: string | null }): string => (milestoneName ? `Draw once "${milestoneName}" is proven` : 'Next draw');
+
 export const reviewWords = {
   designer_review: "The designer's review",
   engineered_sheet: "The supplier's engineered sheet",

@@ -109,3 +109,9 @@ export interface DrawFacts {
   fundings: { amountCents: number; fundedOn: string; reference: string; by: string; received: boolean }[];
   payments: Payment[];
 }
+
+/** The part of a draw's facts that its figures follow from. */
+export interface BasisFacts extends Pick<DrawFacts, 'lines' | 'milestones' | 'previous' | 'loan' | 'objections'> {
+  job: Pick<DrawFacts['job'], 'style' | 'contractSumCents' | 'changesApprovedCents' | 'retainageRate' | 'depositReceivedCents' | 'startOn' | 'completeBy'>;
+  draw: Pick<DrawFacts['draw'], 'basis' | 'throughOn'>;
+}

@@ -2,7 +2,7 @@ import { applyObjections, computeDraw, firstState, type ComputedDraw, type DrawI
 import { whoPays, type WhoPays } from '@tallypole/shared/funding';
 import { atLeastZero, minus, sum } from '@tallypole/shared/money';
 import { canonicalHash, type Json } from '../common/canonical.ts';
-import type { BasisLoan, DrawBasis, DrawFacts } from './draw-facts.ts';
+import type { BasisFacts, BasisLoan, DrawBasis, DrawFacts } from './draw-facts.ts';
 
 const WHOLE = 10_000;
 
@@ -16,7 +16,7 @@ export interface DrawFigures {
 }
 
 /** What the draw rests on now: the frozen basis once it is approved, else the schedule, the contract and the objections of today. */
-export function basisOf(facts: DrawFacts): DrawBasis {
+export function basisOf(facts: BasisFacts): DrawBasis {
   return facts.draw.basis ?? { v: 1, ...currentDraw(facts), milestones: facts.milestones, loan: currentLoan(facts) };
 }
 
@@ -30,7 +30,7 @@ export function askedLines({ lines, previous }: Pick<DrawFacts, 'lines' | 'previ
   });
 }
 
-function currentDraw(facts: DrawFacts): Pick<DrawBasis, 'draw' | 'lines' | 'ownBeforeCents'> {
+function currentDraw(facts: BasisFacts): Pick<DrawBasis, 'draw' | 'lines' | 'ownBeforeCents'> {
   const { job, previous, objections } = facts;
   const asked = askedLines(facts);
   const before = previous && computeDraw(previous.basis.draw, { steps: false });
@@ -51,7 +51,7 @@ function currentDraw(facts: DrawFacts): Pick<DrawBasis, 'draw' | 'lines' | 'ownB
   return { draw, lines, ownBeforeCents: before && previous ? ownLinesNet(previous.basis, before) : 0 };
 }
 
-function currentLoan({ loan, previous }: DrawFacts): BasisLoan | null {
+function currentLoan({ loan, previous }: BasisFacts): BasisLoan | null {
   if (!loan) return null;
   const fundedBeforeCents = previous?.loanCentsToDate ?? 0;
   const { lenderName, holdbackRate, shortfall, constructionCents, equityFirstCents } = loan;

@@ -1,6 +1,5 @@
 import { Injectable } from '@nestjs/common';
-import { draftDraw, workFromPercent, type DrawLine, type LineToDraft } from '@tallypole/shared/draw';
-import { daysBetween } from '@tallypole/shared/due';
+import { workFromPercent, type DrawLine } from '@tallypole/shared/draw';
 import type { Role } from '@tallypole/shared/schemas/roles';
 import type { AdjustDraw, AdjustLine, Draw, DrawList, Redraft, SetDrawPhotos, StartDraw, SubmitDraw, VoidDraw } from '@tallypole/shared/schemas/draws';
 import { requireOnJob } from '../common/access.ts';
@@ -15,6 +14,7 @@ import { DrawActs, isFirm, stateAfter, type Place } from './draw-acts.ts';
 import type { DrawFacts } from './draw-facts.ts';
 import { askedLines, basisOf, figuresOf } from './draw-figures.ts';
 import { DrawMails } from './draw-mails.ts';
+import { drafted } from './drafted.ts';
 import { rowOf } from './draw-view.ts';
 import { DrawsRepository, type LineEntry } from './draws.repository.ts';
 
@@ -65,7 +65,7 @@ export class DrawsService {
         await this.repository.insert(tx, { ...draw, throughOn: input.throughOn }, this.clock.now());
         const facts = await this.acts.find(tx, jobId, input.id, ['books']);
         if (facts.lines.length === 0) throw new Problem('wrong_state', { detail: 'The job has no schedule of values yet. Import it first.' });
-        await this.repository.setLines(tx, draw, drafted(facts));
+        await this.repository.setLines(tx, draw, computed(() => drafted(facts)).map(lineEntry));
         await this.record.append(tx, { firmId: draw.firmId, jobId, act: 'draw.started', by: actor.personId, data: { draw: input.id, number: draw.number, throughOn: input.throughOn } });
         return await this.acts.view(tx, actor, jobId, input.id, ['books']);
       },
@@ -81,7 +81,7 @@ export class DrawsService {
       input,
       run: async (tx, facts) => {
         await this.edit(tx, facts, input.version, {});
-        await this.repository.setLines(tx, idsOf(facts), drafted(facts));
+        await this.repository.setLines(tx, idsOf(facts), computed(() => drafted(facts)).map(lineEntry));
         return {};
       },
     });
@@ -171,19 +171,6 @@ function requireVersion({ draw }: DrawFacts, version: number): void {
 
 const idsOf = ({ job, draw }: DrawFacts) => ({ firmId: job.firmId, jobId: job.id, id: draw.id });
 const lineEntry = ({ id, workCents, onHandCents }: DrawLine): LineEntry => ({ lineId: id, workCents, onHandCents });
-
-/** What the proof there is allows to bill. A contingency waits for a change that uses it. */
-function drafted(facts: DrawFacts): LineEntry[] {
-  const milestones = new Map(facts.milestones.map(({ id, state, percent }) => [id, { state, inspectedRate: percent }]));
-  const waits = { state: 'upcoming', inspectedRate: 0 } as const;
-  const lines: LineToDraft[] = askedLines(facts).map((line, i) => {
-    const { kind, milestoneId } = facts.lines[i] ?? { kind: 'base', milestoneId: null };
-    return { ...line, milestone: kind === 'contingency' ? waits : milestoneId === null ? null : (milestones.get(milestoneId) ?? waits) };
-  });
-  const { style, startOn, completeBy } = facts.job;
-  const elapsedDays = Math.max(0, daysBetween(startOn, facts.draw.throughOn));
-  return computed(() => draftDraw({ style, lines, elapsedDays, contractDays: daysBetween(startOn, completeBy) })).map(lineEntry);
-}
 
 function entryOf(facts: DrawFacts, typed: AdjustLine, i: number): LineEntry {
   const line = askedLines(facts).find(({ id }) => id === typed.lineId);

@@ -4,11 +4,12 @@ import { fileURLToPath } from 'node:url';
 import path from 'node:path';
 
 /** Every kind of mail; each has its folder of three templates: head (subject, preheader, heading, why), text and html. */
-export const noticeKinds = [
+const noticeKinds = [
   'sign-in-code',
   'invitation',
   'firm-invitation',
   'invitation-accepted',
+  'change-to-review',
   'change-issued',
   'change-partly-signed',
   'change-approved',

@@ -99,9 +99,9 @@ export class House {
   }
 
   /** Runs SQL as the owner of the queue's schema. */
-  async asQueueOwner(text: string): Promise<void> {
+  async asQueueOwner(text: string): Promise<pg.QueryResultRow[]> {
     const client = await connected(this.server.url('queue_owner', this.database));
-    await client.query(text).finally(() => client.end());
+    return (await client.query(text).finally(() => client.end())).rows as pg.QueryResultRow[];
   }
 
   async kill(child: ChildProcess, signal: NodeJS.Signals = 'SIGKILL'): Promise<void> {

@@ -13,6 +13,15 @@ export interface ReviewFact {
   fileSha256: string;
 }
 
+/** What is built or taken out, without a price. */
+export interface ScopeLine {
+  description: string;
+  effect: 'add' | 'deduct';
+  /** A decimal with up to 4 places. */
+  quantity: string;
+  unit: string;
+}
+
 /** One snapshot of everything that a change's effect follows from; amounts in cents. */
 export interface ChangeSnapshot {
   job: {
@@ -36,6 +45,7 @@ export interface ChangeSnapshot {
     structural: boolean;
     milestoneName: string | null;
     lines: readonly OwnersLine[];
+    scope: readonly ScopeLine[];
     reviews: readonly ReviewFact[];
   };
 }

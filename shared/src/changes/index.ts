@@ -1,2 +1,2 @@
 export { changeEffect, changeSteps } from './effect.ts';
-export type { ChangeEffect, ChangeSnapshot, Funding, ReviewFact } from './effect.ts';
+export type { ChangeEffect, ChangeSnapshot, Funding, ReviewFact, ScopeLine } from './effect.ts';

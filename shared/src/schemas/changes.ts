@@ -62,6 +62,7 @@ export const DraftChange = z.strictObject({ id: Id, ...DraftFields });
 export const EditChange = z.strictObject({ version: Version, ...DraftFields });
 export const AttachReview = z.strictObject({ id: Id, kind: z.enum(reviewKinds), fileId: Id, reviewerName: Line(120, 2), license: Line(60, 0), reviewedOn: BusinessDate, note: Text(1_000, 0) });
 export const IssueChange = z.strictObject({ version: Version });
+export const AskReview = z.strictObject({ version: Version });
 export const SignChange = z.strictObject({
   id: Id,
   typedName: Line(120, 2),
@@ -75,9 +76,20 @@ export const WithdrawChange = z.strictObject({ reason: Text(2_000, 3) });
 
 const cents = z.int();
 export const OwnersLine = z.object({ description: z.string(), effect: z.enum(['add', 'deduct']), cents });
-export const Review = z.object({ id: Id, kind: z.enum(reviewKinds), fileId: Id, fileName: z.string(), fileSha256: z.string(), reviewerName: z.string(), license: z.string(), reviewedOn: BusinessDate, note: z.string() });
-const Figures = z.object({ contractSumCents: cents, completionDate: BusinessDate, leftToBillCents: cents });
-export const Effect = z.object({ before: Figures, after: Figures, funding: z.enum(['nothing_to_pay', 'homeowner', 'homeowner_until_lender_agrees', 'less_to_pay']), needsLendersWord: z.boolean() });
+/** What is built or taken out, without a price: labor and fees are no part of it. */
+export const ScopeLine = z.object({ description: z.string(), effect: z.enum(['add', 'deduct']), quantity: z.string(), unit: z.string() });
+export const Review = z.object({ id: Id, kind: z.enum(reviewKinds), fileId: Id, fileName: z.string(), fileSha256: z.string(), reviewerName: z.string(), license: z.string(), reviewedOn: BusinessDate, note: z.string(), /** False where what is built was altered after it. */ current: z.boolean() });
+/** What is left to bill moves with every draw, so it is no part of what was agreed: null once signed. */
+const Figures = z.object({ contractSumCents: cents, completionDate: BusinessDate, leftToBillCents: cents.nullable() });
+const NextDraw = z.object({ dueNowCents: cents, homeownerCents: cents, loanCents: cents });
+export const Effect = z.object({
+  before: Figures,
+  after: Figures,
+  funding: z.enum(['nothing_to_pay', 'homeowner', 'homeowner_until_lender_agrees', 'less_to_pay']),
+  needsLendersWord: z.boolean(),
+  /** The first draw in which it is asked for, as things stand: null before there is a schedule, and once signed. */
+  nextDraw: z.object({ before: NextDraw, after: NextDraw }).nullable(),
+});
 
 export const ChangeRow = z.object({
   id: Id,
@@ -111,9 +123,10 @@ export const Change = ChangeRow.extend({
   noCharge: z.boolean(),
   version: Version,
   lines: z.array(OwnersLine),
+  scope: z.array(ScopeLine),
   reviews: z.array(Review),
   effect: Effect.nullable(),
-  steps: z.object({ contractSum: Step, completionDate: Step, leftToBill: Step }).nullable(),
+  steps: z.object({ contractSum: Step, completionDate: Step, leftToBill: Step, nextDraw: Step.nullable(), homeowner: Step.nullable() }).nullable(),
   effectHash: z.string().nullable(),
   /** Rendered by the worker shortly after it was issued. */
   document: z.object({ id: Id, sha256: z.string() }).nullable(),
@@ -132,6 +145,7 @@ export type SetFirmPricing = z.infer<typeof SetFirmPricing>;
 export type DraftChange = z.infer<typeof DraftChange>;
 export type EditChange = z.infer<typeof EditChange>;
 export type AttachReview = z.infer<typeof AttachReview>;
+export type AskReview = z.infer<typeof AskReview>;
 export type IssueChange = z.infer<typeof IssueChange>;
 export type SignChange = z.infer<typeof SignChange>;
 export type DeclineChange = z.infer<typeof DeclineChange>;

@@ -39,12 +39,20 @@ export const reviewKinds = [
   { value: 'official_approval', label: "The building official's approval" },
 ] as const;
 
-export const funding: Readonly<Record<NonNullable<Change['effect']>['funding'], { before: string; after: string }>> = {
-  nothing_to_pay: { before: 'nothing is to be paid', after: 'nobody' },
-  homeowner: { before: 'not part of a loan', after: 'you, in cash' },
-  homeowner_until_lender_agrees: { before: 'the bank has not agreed', after: 'you, in cash' },
-  less_to_pay: { before: 'less is to be paid', after: 'less to pay' },
-};
+/** Who pays it, said to one of those who would, or to somebody else. */
+export function funding(by: NonNullable<Change['effect']>['funding'], mine: boolean): { before: string; after: string } {
+  const cash = mine ? 'you, in cash' : 'the homeowner, in cash';
+  switch (by) {
+    case 'nothing_to_pay':
+      return { before: 'nothing is to be paid', after: 'nobody' };
+    case 'homeowner':
+      return { before: 'there is no loan', after: cash };
+    case 'homeowner_until_lender_agrees':
+      return { before: 'the bank has not agreed', after: cash };
+    case 'less_to_pay':
+      return { before: 'less is to be paid', after: 'nobody' };
+  }
+}
 
 export const strings = {
   title: 'Changes',

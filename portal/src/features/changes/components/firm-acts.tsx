@@ -10,18 +10,14 @@ import { LinkButton } from '../../../ui/link-button.tsx';
 import { FailureState, Section } from '../../../ui/page.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { actOnChange } from '../api/changes.ts';
-import { ReviewForm } from './review-form.tsx';
+import { AskReview } from './ask-review.tsx';
 import { useChanged } from './use-changed.ts';
 
-/** What the firm can do: edit, attach the review, send out, withdraw, revise. */
+/** What the firm can do: ask for a review, edit, send out, withdraw, revise. */
 export function FirmActs({ job, change }: { job: Job; change: Change }) {
   return (
     <>
-      {change.structural && mayChange(change.state, 'review') ? (
-        <Section title="Attach a review">
-          <ReviewForm job={job} change={change} key={change.reviews.length} />
-        </Section>
-      ) : null}
+      {change.structural ? <AskReview job={job} change={change} /> : null}
       {mayChange(change.state, 'edit') ? <SendOut job={job} change={change} /> : null}
       {mayChange(change.state, 'supersede') ? (
         <Section title="If it must be different">

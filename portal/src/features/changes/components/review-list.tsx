@@ -13,6 +13,7 @@ export function ReviewList({ jobId, reviews }: { jobId: string; reviews: Change[
         <li key={review.id}>
           {nameOf(review.kind)}, {review.reviewerName}
           {review.license ? ` (${review.license})` : ''}, {writtenDate(review.reviewedOn)}: <a href={`/api/jobs/${jobId}/files/${review.fileId}`}>{review.fileName}</a>
+          {review.current ? null : <strong> · what is built was altered after it</strong>}
           {review.note ? <span className="quiet"> · {review.note}</span> : null}
         </li>
       ))}

@@ -1,18 +1,21 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import type { Change } from '@tallypole/shared/schemas/changes';
 import type { Job } from '@tallypole/shared/schemas/jobs';
+import { mayChange } from '@tallypole/shared/schemas/change-states';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { Link, useParams } from 'react-router-dom';
 import { writtenDate } from '../../../lib/dates.ts';
 import { useJob } from '../../../lib/job.ts';
-import { Note, PageHead } from '../../../ui/page.tsx';
+import { Note, PageHead, Section } from '../../../ui/page.tsx';
 import { StateTag } from '../../../ui/state-tag.tsx';
 import { changeQuery, isOut } from '../api/changes.ts';
 import { CostView } from '../components/cost-view.tsx';
 import { Decide } from '../components/decide.tsx';
 import { EffectView } from '../components/effect-view.tsx';
 import { FirmActs } from '../components/firm-acts.tsx';
+import { ReviewForm } from '../components/review-form.tsx';
 import { ReviewList } from '../components/review-list.tsx';
+import { ScopeList } from '../components/scope-list.tsx';
 import { Differs } from '../components/differs.tsx';
 import { Papers } from '../components/papers.tsx';
 import { changeName, dayCount, forSite, states, strings } from '../strings.ts';
@@ -37,15 +40,23 @@ export function Component() {
       ) : null}
       {change.closedReason ? <Note>{change.closedReason}</Note> : null}
       {change.structural ? <Structure job={job} change={change} /> : null}
+      {prices && change.presentation === 'itemized' ? null : <ScopeList scope={change.scope} />}
       {prices ? <Differs change={change} /> : null}
-      {change.effect && (isOut(change) || change.cost) ? <EffectView change={change} effect={change.effect} /> : null}
+      {change.effect && (isOut(change) || change.state === 'approved' || change.cost) ? <EffectView change={change} effect={change.effect} mine={may(job.roles, 'change.decide')} /> : null}
       {change.cost ? <CostView cost={change.cost} /> : null}
       <Papers jobId={job.id} change={change} timeZone={job.timeZone} />
       {isOut(change) && may(job.roles, 'change.decide') ? <Decide job={job} change={change} /> : null}
+      {change.structural && may(job.roles, 'change.review') && mayChange(change.state, 'review') ? <Attach job={job} change={change} /> : null}
       {may(job.roles, 'change.price') ? <FirmActs job={job} change={change} /> : null}
     </article>
   );
 }
+
+const Attach = ({ job, change }: { job: Job; change: Change }) => (
+  <Section title="Attach a review">
+    <ReviewForm job={job} change={change} key={change.reviews.length} />
+  </Section>
+);
 
 function State({ change, prices }: { change: Change; prices: boolean }) {
   const { words, meaning } = prices ? states[change.state] : forSite(change.state);
