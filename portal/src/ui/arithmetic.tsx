@@ -1,10 +1,12 @@
-import type { Figure as FigureValue, Step } from '@tallypole/shared/arithmetic';
+import type { Figure as FigureValue, Origin, Step } from '@tallypole/shared/arithmetic';
 import { formatMoney, formatRate } from '@tallypole/shared/money';
+import { Link, useParams } from 'react-router-dom';
 import { writtenDate } from '../lib/dates.ts';
+import { originPath } from '../lib/origin-path.ts';
 import classes from './figure.module.css';
 
 /** A figure of any kind as text. */
-export function printFigure(figure: FigureValue): string {
+function printFigure(figure: FigureValue): string {
   switch (figure.kind) {
     case 'money':
       return formatMoney(figure.cents);
@@ -31,7 +33,10 @@ export function Arithmetic({ step }: { step: Step }) {
 function StepItem({ step, open = false }: { step: Step; open?: boolean }) {
   const head = (
     <span className={classes['head']}>
-      <span>{step.label}</span>
+      <span>
+        {step.label}
+        {step.origin ? <From origin={step.origin} of={step.label} /> : null}
+      </span>
       <span className="number">{printFigure(step.result)}</span>
     </span>
   );
@@ -61,5 +66,17 @@ function StepItem({ step, open = false }: { step: Step; open?: boolean }) {
         </ul>
       </details>
     </li>
+  );
+}
+
+/** The record that a given figure was taken from. */
+function From({ origin, of }: { origin: Origin; of: string }) {
+  const { jobId } = useParams();
+  const path = originPath(origin, jobId);
+  const name = origin.label === of ? 'look it up' : origin.label;
+  return (
+    <span className={classes['from']}>
+      {path === null ? origin.label : <Link to={path}>{name}</Link>}
+    </span>
   );
 }

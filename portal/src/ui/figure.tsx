@@ -38,7 +38,7 @@ export function Figure({ children, steps, label }: FigureProps) {
   return (
     <Popover opened={opened} onChange={setOpened} width={440} position="bottom-end" withArrow shadow="md" trapFocus returnFocus>
       <Popover.Target popupType="dialog">{button}</Popover.Target>
-      <Popover.Dropdown aria-label={`${label}: how it is worked out`} style={{ maxHeight: '60vh', overflow: 'auto' }} tabIndex={0}>
+      <Popover.Dropdown style={{ maxHeight: '60vh', overflow: 'auto' }} tabIndex={0}>
         <Arithmetic step={steps} />
       </Popover.Dropdown>
     </Popover>

@@ -29,19 +29,20 @@ export function Form<Values extends object>({ act, submitLabel, children, aside,
   );
 }
 
+const PREFIX = 'Error: ';
+
 function ErrorSummary<Values extends object>({ act }: { act: ActForm<Values> }) {
   const box = useRef<HTMLDivElement>(null);
   const errors = Object.entries(act.form.errors);
   const shown = act.failures > 0 && (errors.length > 0 || act.failure !== null);
   useEffect(() => {
-    if (act.failures === 0) return undefined;
+    if (!shown) return undefined;
     box.current?.focus();
-    const { title } = document;
-    document.title = title.startsWith('Error: ') ? title : `Error: ${title}`;
+    document.title = `${PREFIX}${document.title}`;
     return () => {
-      document.title = title;
+      document.title = document.title.replace(PREFIX, '');
     };
-  }, [act.failures]);
+  }, [shown, act.failures]);
   if (!shown) return null;
   return (
     <div className={classes['summary']} ref={box} tabIndex={-1} role="alert">
