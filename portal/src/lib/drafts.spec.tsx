@@ -2,7 +2,7 @@ import { render, screen } from '@testing-library/react';
 import userEvent from '@testing-library/user-event';
 import { beforeEach, describe, expect, it } from 'vitest';
 import { dropEverything, keepOnlyFor, readDraft, keepDraft } from './drafts.ts';
-import { useIdempotencyKey } from './idempotency-key.ts';
+import { useIdempotencyKey, useNewId } from './idempotency-key.ts';
 
 beforeEach(() => sessionStorage.clear());
 
@@ -25,20 +25,41 @@ describe('drafts', () => {
   });
 });
 
-describe('an idempotency key', () => {
-  const Key = () => {
-    const { key, spend } = useIdempotencyKey('approve-1');
-    return <button onClick={spend}>{key}</button>;
+describe('the key of an act, and the id of what it creates', () => {
+  const Act = () => {
+    const { key, spend, renew } = useIdempotencyKey('approve-1');
+    const id = useNewId('approve-1');
+    return (
+      <>
+        <output>{`${key} ${id}`}</output>
+        <button onClick={spend}>Answered</button>
+        <button onClick={renew}>Taken</button>
+      </>
+    );
   };
+  const shown = () => {
+    const [key = '', id = ''] = screen.getByRole('status').textContent.split(' ');
+    return { key, id };
+  };
+  const press = (name: string) => userEvent.click(screen.getByRole('button', { name }));
 
-  it('stays the same over a reload until the act was answered', async () => {
-    const { unmount } = render(<Key />);
-    const first = screen.getByRole('button').textContent;
-    expect(first).toMatch(/^[0-9a-f-]{36}$/);
+  it('stay the same over a reload until the act was answered', async () => {
+    const { unmount } = render(<Act />);
+    const first = shown();
+    expect(first.key).toMatch(/^[0-9a-f-]{36}$/);
     unmount();
-    render(<Key />);
-    expect(screen.getByRole('button').textContent).toBe(first);
-    await userEvent.click(screen.getByRole('button'));
-    expect(screen.getByRole('button').textContent).not.toBe(first);
+    render(<Act />);
+    expect(shown()).toEqual(first);
+    await press('Answered');
+    expect(shown().key).not.toBe(first.key);
+    expect(shown().id).not.toBe(first.id);
+  });
+
+  it('part where the key stands for something else: the record stays the same one', async () => {
+    render(<Act />);
+    const first = shown();
+    await press('Taken');
+    expect(shown().key).not.toBe(first.key);
+    expect(shown().id).toBe(first.id);
   });
 });

@@ -1,12 +1,15 @@
-import { useState } from 'react';
-import { v4 } from 'uuid';
+import { useReducer } from 'react';
+import { v4, v7 } from 'uuid';
 
-const PREFIX = 'tally-key:';
+const KEY = 'tally-key:';
+const ID = 'tally-id:';
 
 export interface IdempotencyKey {
   key: string;
-  /** The act was answered: the next one gets a key of its own. */
+  /** The act was answered: the next one gets a key of its own, and what it creates an id of its own. */
   spend: () => void;
+  /** The key stands for something else already; the record that the form creates stays the same one. */
+  renew: () => void;
 }
 
 /**
@@ -14,19 +17,28 @@ export interface IdempotencyKey {
  * same one. `scope` names form and record.
  */
 export function useIdempotencyKey(scope: string): IdempotencyKey {
-  const name = `${PREFIX}${scope}`;
-  const [key, setKey] = useState(() => stored(name));
-  const spend = () => {
-    sessionStorage.removeItem(name);
-    setKey(stored(name));
+  const [, look] = useReducer((times: number) => times + 1, 0);
+  const renew = () => {
+    sessionStorage.removeItem(`${KEY}${scope}`);
+    look();
   };
-  return { key, spend };
+  const spend = () => {
+    sessionStorage.removeItem(`${ID}${scope}`);
+    renew();
+  };
+  return { key: stored(`${KEY}${scope}`, v4), spend, renew };
 }
 
-function stored(name: string): string {
+/**
+ * An id that this browser makes for a new record. It lives as long as the key of the same scope, so that whatever is sent again, after
+ * a reload too, creates the same thing.
+ */
+export const useNewId = (scope: string): string => stored(`${ID}${scope}`, v7);
+
+function stored(name: string, make: () => string): string {
   const before = sessionStorage.getItem(name);
   if (before) return before;
-  const key = v4();
-  sessionStorage.setItem(name, key);
-  return key;
+  const made = make();
+  sessionStorage.setItem(name, made);
+  return made;
 }

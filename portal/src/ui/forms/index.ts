@@ -1,4 +1,5 @@
 export { CheckboxField, DateField, MoneyField, NumberField, PercentField, SelectField, TextAreaField, TextField } from './fields.tsx';
 export { FieldGroup, FieldRow, Form } from './form.tsx';
-export { useActForm, useNewId } from './use-act-form.ts';
-export type { ActForm, FieldProps } from './use-act-form.ts';
+export { useActForm } from './use-act-form.ts';
+export { useNewId } from '../../lib/idempotency-key.ts';
+export type { ActForm } from './use-act-form.ts';

@@ -1,6 +1,5 @@
 import { schemaResolver, useForm, type UseFormReturnType } from '@mantine/form';
 import { useCallback, useEffect, useRef, useState } from 'react';
-import { v7 } from 'uuid';
 import type { z } from 'zod';
 import { dropDraft, keepDraft, readDraft } from '../../lib/drafts.ts';
 import { useIdempotencyKey } from '../../lib/idempotency-key.ts';
@@ -75,7 +74,7 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
       const problem = error instanceof Problem ? error : new Problem('failed', 'Sorry, something went wrong on our side. Nothing was changed.', 500);
       // a refused act left no trace; a corrected form is another act under the same key only if the first was never stored
       if (problem.errors.length > 0) form.setErrors(Object.fromEntries(problem.errors.map((e) => [pathOf(e.pointer), e.message])));
-      if (problem.code === 'key_reused') idempotency.spend();
+      if (problem.code === 'key_reused') idempotency.renew();
       failed(problem);
     } finally {
       busy.current = false;
@@ -96,9 +95,3 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
 
 const pathOf = (pointer: string): string => pointer.replace(/^\//, '').replaceAll('/', '.');
 export const fieldId = (form: string, path: string): string => `${form}-${path}`.replace(/[^A-Za-z0-9_-]/g, '-');
-
-/** An id that this browser makes for a new record, once per form, so that a retry creates the same thing. */
-export function useNewId(): string {
-  const [id] = useState(() => v7());
-  return id;
-}

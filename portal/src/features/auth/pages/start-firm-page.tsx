@@ -9,7 +9,7 @@ import { PageHead } from '../../../ui/page.tsx';
 import { timeZones } from '../../../lib/time-zones.ts';
 
 export function Component() {
-  const id = useNewId();
+  const id = useNewId('start-firm');
   const navigate = useNavigate();
   const act = useActForm({
     name: 'start-firm',

@@ -59,7 +59,7 @@ const valuesOf = (id: string, { cost, ...change }: Change): EditorValues => ({
 
 /** Prices a change: the reason in plain words, the lines as a sheet, and what it comes to while you type. */
 export function ChangeEditor({ job, from, as }: ChangeEditorProps) {
-  const id = useNewId();
+  const id = useNewId(`change-${as}-${from?.id ?? job.id}`);
   const navigate = useNavigate();
   const changed = useChanged(job.id);
   const act = useActForm({

@@ -15,15 +15,22 @@ import { actOnChange } from '../api/changes.ts';
 import { dayCount, strings } from '../strings.ts';
 import { useChanged } from './use-changed.ts';
 
+export interface DecideProps {
+  job: Job;
+  change: Change;
+  /** The server refused since it would do something else than what was shown: what it said. */
+  onMoved: (message: string) => void;
+}
+
 /** The signature: says in a sentence what will happen, above a button that names the act. Or declining, with a reason. */
-export function Decide({ job, change }: { job: Job; change: Change }) {
+export function Decide({ job, change, onMoved }: DecideProps) {
   const [declining, setDeclining] = useState(false);
   const me = change.signers.find((signer) => signer.me);
   if (me?.signedAt) return <Note>You have signed. {waitsFor(change)}</Note>;
   if (!change.document || !change.effectHash) return <p role="status">The paper is being made. It is here in a moment.</p>;
   if (declining) return <Decline job={job} change={change} onBack={() => setDeclining(false)} />;
   // the key makes a new form when the effect moves: what is signed is what is shown
-  return <Sign key={change.effectHash} job={job} change={change} onDecline={() => setDeclining(true)} />;
+  return <Sign key={change.effectHash} job={job} change={change} onMoved={onMoved} onDecline={() => setDeclining(true)} />;
 }
 
 function waitsFor(change: Change): string {
@@ -31,13 +38,12 @@ function waitsFor(change: Change): string {
   return missing.length > 0 ? `It holds once ${missing.join(' and ')} has signed too.` : '';
 }
 
-function Sign({ job, change, onDecline }: { job: Job; change: Change; onDecline: () => void }) {
-  const id = useNewId();
+function Sign({ job, change, onMoved, onDecline }: DecideProps & { onDecline: () => void }) {
+  const id = useNewId(`sign-${change.id}-${(change.effectHash ?? '').slice(0, 12)}`);
   const { person } = useMe();
   const presence = usePresence();
   const queries = useQueryClient();
   const changed = useChanged(job.id);
-  const [moved, setMoved] = useState(false);
   const price = formatChange(change.chargedCents ?? 0);
   const act = useActForm({
     name: `sign-${change.id}-${(change.effectHash ?? '').slice(0, 12)}`,
@@ -48,7 +54,7 @@ function Sign({ job, change, onDecline }: { job: Job; change: Change; onDecline:
         return await presence.guard(() => actOnChange(job.id, change.id, 'sign', values, key));
       } catch (error) {
         if (isProblemWith(error, 'effect_changed')) {
-          setMoved(true);
+          onMoved(error.message);
           await queries.invalidateQueries({ queryKey: ['jobs', job.id] });
         }
         throw error;
@@ -62,7 +68,6 @@ function Sign({ job, change, onDecline }: { job: Job; change: Change; onDecline:
   return (
     <Section title="Sign, or decline">
       {presence.dialog}
-      {moved ? <Note>{strings.changed}</Note> : null}
       <p style={{ marginBottom: 12 }}>
         You agree to the change above, its price of {price} and {dayCount(change.days)}. {change.signersNeeded === 'all' ? waitsFor(change) : ''}
       </p>

@@ -13,7 +13,7 @@ import { useChanged } from './use-changed.ts';
 
 /** A structural change goes out only with its review: file, name and date. */
 export function ReviewForm({ job, change }: { job: Job; change: Change }) {
-  const id = useNewId();
+  const id = useNewId(`review-${change.id}`);
   const changed = useChanged(job.id);
   const [sent, setSent] = useState<number | null>(null);
   const act = useActForm({

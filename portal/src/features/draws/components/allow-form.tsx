@@ -24,7 +24,7 @@ interface Row {
 
 /** How far the lender takes each line to be, in a sheet; only lines that differ from what is billed are sent. */
 export function AllowForm({ job, draw }: { job: Job; draw: Draw }) {
-  const id = useNewId();
+  const id = useNewId(`draw-allow-${draw.id}-${draw.version}`);
   const drawn = useDrawn(job.id);
   const [typed, setTyped] = useState<ReadonlyMap<string, string>>(() => new Map(draw.lines.flatMap(({ lineId, allowedRate }) => (allowedRate === null ? [] : [[lineId, percent(allowedRate)] as const]))));
   const rows = useMemo(() => billedLines(draw).map((line): Row => {

@@ -19,7 +19,7 @@ const words = strings.approve;
 
 /** What approving does, in a sentence, and the button that does exactly that: it carries the hash of what is shown. */
 export function ApproveDraw({ job, draw }: { job: Job; draw: Draw }) {
-  const id = useNewId();
+  const id = useNewId(`draw-approve-${draw.effectHash}`);
   const { key, spend } = useIdempotencyKey(`draw-approve-${draw.effectHash}`);
   const [busy, setBusy] = useState(false);
   const [failure, setFailure] = useState<unknown>(null);

@@ -10,7 +10,7 @@ const words = strings.review;
 
 /** The lender has sent money: how much, when, under which reference. */
 export function FundForm({ job, draw }: { job: Job; draw: Draw }) {
-  const id = useNewId();
+  const id = useNewId(`draw-fund-${draw.id}-${draw.fundings.length}`);
   const drawn = useDrawn(job.id);
   const left = minus(draw.loanCents, sum(draw.fundings.map(({ amountCents }) => amountCents)));
   const act = useActForm({

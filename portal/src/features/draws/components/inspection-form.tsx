@@ -9,7 +9,7 @@ import { useDrawn } from './use-drawn.ts';
 const words = strings.review;
 
 export function InspectionForm({ job, draw }: { job: Job; draw: Draw }) {
-  const id = useNewId();
+  const id = useNewId(`draw-inspect-${draw.id}-${draw.version}`);
   const drawn = useDrawn(job.id);
   const act = useActForm({
     name: `draw-inspect-${draw.id}-${draw.version}`,

@@ -7,7 +7,7 @@ import { useDrawn } from './use-drawn.ts';
 
 /** How much of a line is not approved, and why. */
 export function ObjectForm({ jobId, draw, line, onClose }: { jobId: string; draw: Draw; line: DrawLine; onClose: () => void }) {
-  const id = useNewId();
+  const id = useNewId(`draw-object-${line.lineId}`);
   const drawn = useDrawn(jobId);
   const act = useActForm({
     name: `draw-object-${line.lineId}`,

@@ -37,7 +37,7 @@ export function PayPart({ job, draw }: { job: Job; draw: Draw }) {
 }
 
 function PayButton({ job, draw }: { job: Job; draw: Draw }) {
-  const id = useNewId();
+  const id = useNewId(`pay-${draw.id}-${draw.payments.length}`);
   const { key, spend } = useIdempotencyKey(`pay-${draw.id}-${draw.payments.length}`);
   const [paymentId, setPaymentId] = useState<string | null>(null);
   const [failure, setFailure] = useState<unknown>(null);

@@ -8,7 +8,7 @@ import { useDrawn } from './use-drawn.ts';
 
 /** One step from what is proven to a draft. */
 export function StartDrawForm({ job }: { job: Job }) {
-  const id = useNewId();
+  const id = useNewId(`draw-start-${job.id}`);
   const navigate = useNavigate();
   const drawn = useDrawn(job.id);
   const act = useActForm({

@@ -37,7 +37,7 @@ type Values = ReturnType<typeof emptyJob>;
 
 export function Component() {
   const { firmId = '' } = useParams();
-  const id = useNewId();
+  const id = useNewId(`create-job-${firmId}`);
   const navigate = useNavigate();
   const act = useActForm({
     name: `create-job-${firmId}`,

@@ -59,7 +59,7 @@ function Terms({ loan }: { loan: Loan }) {
 }
 
 function LoanForm({ job, loan }: { job: Job; loan: Loan | null }) {
-  const freshId = useNewId();
+  const freshId = useNewId(`loan-${job.id}-${loan?.version ?? 0}`);
   const id = loan?.id ?? freshId;
   const queries = useQueryClient();
   const initialValues = {

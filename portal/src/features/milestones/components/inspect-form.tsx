@@ -9,7 +9,7 @@ import { useDone } from './use-done.ts';
 /** Somebody from outside the firm says what they saw: of a claim anything, of work under way a part. */
 export function InspectForm(props: ActProps) {
   const { job, milestone } = props;
-  const id = useNewId();
+  const id = useNewId(formName('inspect', props));
   const results = milestone.state === 'claimed' ? inspectionResults : (['partial'] as const);
   const act = useActForm<Inspect, Awaited<ReturnType<typeof actOnMilestone>>>({
     name: formName('inspect', props),

@@ -14,7 +14,7 @@ const ROLES: { value: JobRole; label: string }[] = [
 
 /** Invites an address; the mail grants nothing, whoever opens it proves the address by a code. */
 export function InviteForm({ jobId }: { jobId: string }) {
-  const id = useNewId();
+  const id = useNewId(`invite-${jobId}`);
   const act = useActForm({
     name: `invite-${jobId}`,
     initialValues: { id, name: '', email: '', role: ROLES[0]?.value ?? 'homeowner' },

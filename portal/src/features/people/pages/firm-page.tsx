@@ -58,12 +58,12 @@ function Firm() {
 }
 
 function MemberForm({ firmId }: { firmId: string }) {
-  const id = useNewId();
+  const id = useNewId(`invite-member-${firmId}`);
   const act = useActForm({
     name: `invite-member-${firmId}`,
-    initialValues: { id, name: '', email: '', role: firmRoles[1] as string },
+    initialValues: { id, name: '', email: '', role: firmRoles[1] },
     schema: InviteMember,
-    send: (values, key) => inviteMember(firmId, { ...values, id } as InviteMember, key),
+    send: (values, key) => inviteMember(firmId, { ...values, id }, key),
     onDone: (members) => {
       toast('The invitation is on its way.');
       queryClient.setQueryData(membersQuery(firmId).queryKey, members);
