@@ -35,7 +35,7 @@ describe('a change, from its price to the last signature', () => {
     await builder.page.getByLabel('It touches the structure').check();
     await builder.page.getByLabel('It belongs to').selectOption({ label: 'Framing' });
     await builder.fill('More calendar days', '2');
-    await builder.fill('The price holds until', 'March 19, 2099');
+    await builder.page.getByLabel('The price holds until', { exact: true }).fill('March 19, 2099');
     // pasted from a spreadsheet: one line taken out, one added, one for labor
     const sheet = builder.page.getByRole('grid', { name: 'Lines of the change' });
     await sheet.getByRole('gridcell').first().click();
@@ -59,7 +59,7 @@ describe('a change, from its price to the last signature', () => {
     await builder.sees('100 % sent');
     await builder.fill('Who reviewed it', 'P. Wren, PE');
     await builder.page.getByLabel('License').fill('OH 55512');
-    await builder.fill('Reviewed on', '11/20/2026');
+    await builder.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
     await builder.press('Attach the review');
     await builder.sees('joist-sheet.pdf');
     await builder.press(/^Send out for \+\$951\.37/);

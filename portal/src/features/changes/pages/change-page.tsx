@@ -3,6 +3,7 @@ import type { Change } from '@tallypole/shared/schemas/changes';
 import type { Job } from '@tallypole/shared/schemas/jobs';
 import { mayChange } from '@tallypole/shared/schemas/change-states';
 import { may } from '@tallypole/shared/schemas/permissions';
+import { useState } from 'react';
 import { Link, useParams } from 'react-router-dom';
 import { writtenDate } from '../../../lib/dates.ts';
 import { useJob } from '../../../lib/job.ts';
@@ -26,8 +27,14 @@ export function Component() {
   const { changeId = '' } = useParams();
   const { data: change } = useSuspenseQuery(changeQuery(job.id, changeId));
   const prices = change.chargedCents !== null;
+  const { moved, onMoved } = useMoved(change);
   return (
     <article>
+      {moved ? (
+        <div role="alert" style={{ marginBottom: 16 }}>
+          <Note>{moved}</Note>
+        </div>
+      ) : null}
       <State change={change} prices={prices} />
       <PageHead title={`${changeName(change)}: ${change.title}`}>
         {prices ? null : <p className="quiet">{dayCount(change.days)}</p>}
@@ -45,11 +52,19 @@ export function Component() {
       {change.effect && (isOut(change) || change.state === 'approved' || change.cost) ? <EffectView change={change} effect={change.effect} mine={may(job.roles, 'change.decide')} /> : null}
       {change.cost ? <CostView cost={change.cost} /> : null}
       <Papers jobId={job.id} change={change} timeZone={job.timeZone} />
-      {isOut(change) && may(job.roles, 'change.decide') ? <Decide job={job} change={change} /> : null}
+      {isOut(change) && may(job.roles, 'change.decide') ? <Decide job={job} change={change} onMoved={onMoved} /> : null}
       {change.structural && may(job.roles, 'change.review') && mayChange(change.state, 'review') ? <Attach job={job} change={change} /> : null}
       {may(job.roles, 'change.price') ? <FirmActs job={job} change={change} /> : null}
     </article>
   );
+}
+
+/** What signing does may move under an open page: by another signature, or by a revision. The page says so, in the server's words where it has them. */
+function useMoved(change: Change) {
+  const [opened] = useState(change.effectHash);
+  const [said, onMoved] = useState<string | null>(null);
+  const differs = opened !== null && change.effectHash !== null && change.effectHash !== opened && isOut(change);
+  return { moved: said ?? (differs ? strings.changed : null), onMoved };
 }
 
 const Attach = ({ job, change }: { job: Job; change: Change }) => (
