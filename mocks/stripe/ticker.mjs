@@ -68,7 +68,7 @@ export class Ticker {
  * @param {Act} act
  * @param {Plan} plan
  */
-export function perform(act, { id, step, code }) {
+function perform(act, { id, step, code }) {
   switch (step) {
     case 'settle':
       return settle(act, id);

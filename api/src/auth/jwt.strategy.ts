@@ -1,4 +1,5 @@
 import { Inject, Injectable } from '@nestjs/common';
+import type { Request } from 'express';
 import { PassportStrategy } from '@nestjs/passport';
 import { Strategy } from 'passport-jwt';
 import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
@@ -15,7 +16,7 @@ interface AccessPayload {
 export class JwtStrategy extends PassportStrategy(Strategy) {
   constructor(@Inject(CONFIGURATION) configuration: Configuration) {
     const cookies = new SessionCookies(configuration.PUBLIC_URL);
-    super({ jwtFromRequest: (request) => cookies.access(request), secretOrKey: configuration.JWT_SECRET, algorithms: ['HS256'] });
+    super({ jwtFromRequest: (request: Request) => cookies.access(request), secretOrKey: configuration.JWT_SECRET, algorithms: ['HS256'] });
   }
 
   validate(payload: AccessPayload): Actor {

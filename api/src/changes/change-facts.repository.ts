@@ -35,6 +35,10 @@ const LINES = /* sql */ `(select coalesce(json_agg(json_build_object('descriptio
 const SCOPE = /* sql */ `(select coalesce(json_agg(json_build_object('description', s.description, 'effect', s.effect, 'quantity', s.quantity, 'unit', s.unit) order by s.position), '[]')
   from change_scope s where s.change_id = c.id)`;
 
+const PHOTOS = /* sql */ `(select coalesce(json_agg(json_build_object('id', p.id, 'note', p.note, 'sha256', x.sha256, 'width', p.width, 'height', p.height,
+    'storageKey', (select z->>'key' from jsonb_array_elements(p.sizes) z where z->>'size' = 'medium')) order by h.position), '[]')
+  from change_photo h join photo p on p.id = h.photo_id join file x on x.id = p.file_id where h.change_id = c.id)`;
+
 const REVIEWS = /* sql */ `(select coalesce(json_agg(json_build_object('id', r.id, 'kind', r.kind, 'fileId', r.file_id, 'fileName', x.name, 'fileSha256', x.sha256,
     'reviewerName', r.reviewer_name, 'license', r.license, 'reviewedOn', r.reviewed_on, 'note', r.note,
     'current', r.scope_sha256 = c.scope_sha256) order by r.at, r.id), '[]')
@@ -57,7 +61,7 @@ const COST = /* sql */ `(select json_build_object('lines', k.lines, 'terms', k.t
 const AUTHOR = /* sql */ `(select json_build_object('name', coalesce(p.name, p.email), 'email', p.email) from person p where p.id = c.created_by)`;
 
 const FACTS = /* sql */ `
-  select json_build_object('job', ${JOB}, 'change', ${CHANGE}, 'lines', ${LINES}, 'scope', ${SCOPE}, 'reviews', ${REVIEWS}, 'signers', ${SIGNERS}, 'author', ${AUTHOR},
+  select json_build_object('job', ${JOB}, 'change', ${CHANGE}, 'lines', ${LINES}, 'scope', ${SCOPE}, 'photos', ${PHOTOS}, 'reviews', ${REVIEWS}, 'signers', ${SIGNERS}, 'author', ${AUTHOR},
     'document', ${paper('c.document_id')}, 'signedDocument', ${paper('c.signed_document_id')}, 'supersededBy', ${SUPERSEDED_BY}, 'cost', ${COST}, 'next', ${NEXT_DRAW}) as facts
   from change c join job j on j.id = c.job_id join firm f on f.id = j.firm_id left join milestone m on m.id = c.milestone_id
   where c.job_id = $1 and c.id = $2`;

@@ -71,6 +71,7 @@ export interface ChangeFacts {
   };
   lines: OwnersLine[];
   scope: ScopeLine[];
+  photos: { id: string; note: string; sha256: string; width: number; height: number; storageKey: string }[];
   reviews: Change['reviews'];
   signers: SignerFact[];
   /** Who priced it, and to whom answers go; null where the reader doesn't know them. */
@@ -85,7 +86,7 @@ export interface ChangeFacts {
 }
 
 /** The snapshot that the effect follows from. */
-export function snapshotOf({ job, change, lines, scope, reviews }: ChangeFacts): ChangeSnapshot {
+export function snapshotOf({ job, change, lines, scope, photos, reviews }: ChangeFacts): ChangeSnapshot {
   const { number, revision, title, reason, chargedCents, days, goodUntil, structural, milestoneName } = change;
   return {
     job: {
@@ -100,6 +101,7 @@ export function snapshotOf({ job, change, lines, scope, reviews }: ChangeFacts):
     },
     change: {
       number, revision, title, reason, chargedCents, days, goodUntil, structural, milestoneName, lines, scope,
+      photos: photos.map(({ sha256 }) => sha256),
       reviews: reviews.filter(({ current }) => current).map(({ kind, reviewerName, license, reviewedOn, fileName, fileSha256 }) => ({ kind, reviewerName, license, reviewedOn, fileName, fileSha256 })),
     },
   };

@@ -9,7 +9,7 @@ import { fundingWords, nextDrawName, reviewWords, structuralCaution } from './wo
 const days = (count: number) => (count === 1 ? '1 day' : `${count} days`);
 
 /** What the homeowners sign: the reason, what differs, the whole effect, the reviews. */
-export function changePaper(facts: ChangeFacts, today: string): Paper {
+export function changePaper(facts: ChangeFacts, today: string, pictures: readonly Buffer[]): Paper {
   const { job, change, lines, scope, reviews } = facts;
   const { effect, hash } = effectOf(facts);
   const { before, after } = effect;
@@ -24,6 +24,7 @@ export function changePaper(facts: ChangeFacts, today: string): Paper {
     { text: `${formatChange(change.chargedCents)} · ${days(change.days)} · the price holds until ${writtenBusinessDate(change.goodUntil, true)}`, style: 'quiet' },
     { text: 'Why', style: 'heading' },
     { text: change.reason },
+    ...(pictures.length > 0 ? [pictureRows(facts, pictures)] : []),
     { text: 'What differs', style: 'heading' },
     // however the price is shown, what is built is said
     ...(change.presentation !== 'itemized' && scope.length > 0 ? [scopeTable(scope)] : []),
@@ -40,6 +41,13 @@ export function changePaper(facts: ChangeFacts, today: string): Paper {
     { text: `Effect ${hash}`, style: 'small', margin: [0, 10, 0, 0] },
   ];
   return { title: `${changeName(change)}, ${job.name}`, head: `${job.firmName} · ${job.name}, ${job.place}`, foot: `${changeName(change)}`, content };
+}
+
+/** Two pictures beside each other, each with its note. */
+function pictureRows({ photos }: ChangeFacts, pictures: readonly Buffer[]): Content {
+  const cells = pictures.map((picture, i): Content => ({ stack: [{ image: `data:image/jpeg;base64,${picture.toString('base64')}`, fit: [232, 174] }, { text: photos[i]?.note ?? '', style: 'small', margin: [0, 3, 0, 0] }], width: '*' }));
+  const rows = Array.from({ length: Math.ceil(cells.length / 2) }, (_, i): Content => ({ columns: [...cells.slice(i * 2, i * 2 + 2), ...(i * 2 + 1 < cells.length ? [] : [{ text: '', width: '*' }])], columnGap: 20, margin: [0, 8, 0, 0], unbreakable: true } as Content));
+  return { stack: rows };
 }
 
 const scopeTable = (scope: ChangeFacts['scope']): Content => ({

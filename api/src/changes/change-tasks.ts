@@ -62,7 +62,8 @@ class ChangePapers {
     const facts = await this.read(job);
     if (!facts || !mayChange(facts.change.state, 'sign_last') || facts.document) return;
     const { text, hash } = effectOf(facts);
-    const stored = await this.store(job, await renderPaper(changePaper(facts, this.clock.today(facts.job.timeZone))), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
+    const pictures = await Promise.all(facts.photos.map(async ({ storageKey }) => await buffer(await this.storage.get(storageKey))));
+    const stored = await this.store(job, await renderPaper(changePaper(facts, this.clock.today(facts.job.timeZone), pictures)), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
     await this.work.writeAsFirm(job.firmId, async (tx, systemPerson) => {
       const now = await this.lock(tx, job);
       if (!mayChange(now.change.state, 'sign_last') || now.document) return;

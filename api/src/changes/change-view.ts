@@ -28,6 +28,7 @@ export function changeView(facts: ChangeFacts, roles: readonly Role[], { personI
     chargedCents: prices ? chargedCents : null,
     lines: prices ? facts.lines : [],
     scope: facts.scope,
+    photos: facts.photos.map(({ id, note, width, height }) => ({ id, note, width, height })),
     reviews: facts.reviews,
     ...(prices && open ? openEffect(facts, today) : { effect: prices ? agreedEffect(facts) : null, steps: null }),
     effectHash: prices ? effectHash : null,

@@ -55,6 +55,17 @@ export class ChangesRepository {
     return true;
   }
 
+  /** Sets the pictures; gives back how many of them are photos of this job that can be shown. */
+  async setPhotos(tx: Tx, { firmId, jobId, changeId }: OfChange, photoIds: readonly string[]): Promise<number> {
+    await tx.rows('delete from change_photo where change_id = $1', [changeId]);
+    const set = await tx.rows(
+      `insert into change_photo (firm_id, job_id, change_id, position, photo_id)
+       select $1, $2, $3, i.position, p.id from unnest($4::uuid[]) with ordinality as i (id, position) join photo p on p.id = i.id where p.job_id = $2 and p.state = 'ready' returning photo_id`,
+      [firmId, jobId, changeId, photoIds],
+    );
+    return set.length;
+  }
+
   private async setParts(tx: Tx, { firmId, jobId, changeId }: OfChange, draft: PricedDraft): Promise<void> {
     await tx.rows('delete from change_line where change_id = $1', [changeId]);
     await tx.rows(

@@ -13,7 +13,7 @@ import { RecordRepository } from '../record/record.repository.ts';
 import { changeView, visibleStates } from './change-view.ts';
 import type { ChangeFacts } from './change-facts.ts';
 import { ChangeFactsRepository } from './change-facts.repository.ts';
-import { ChangesRepository } from './changes.repository.ts';
+import { ChangesRepository, type OfChange } from './changes.repository.ts';
 import { costOf, priceDraft } from './pricing-draft.ts';
 
 @Injectable()
@@ -57,7 +57,9 @@ export class ChangesService {
       const priced = priceDraft(draft, await this.terms(tx, jobId));
       const numbered = await this.repository.nextNumber(tx, jobId);
       if (!numbered) throw new Problem('not_found');
-      await this.repository.insert(tx, { firmId: numbered.firmId, jobId, changeId: draft.id }, { number: numbered.number, revision: '' }, priced, this.clock.now());
+      const of = { firmId: numbered.firmId, jobId, changeId: draft.id };
+      await this.repository.insert(tx, of, { number: numbered.number, revision: '' }, priced, this.clock.now());
+      await this.setPhotos(tx, of, draft);
       return draft.id;
     });
   }
@@ -69,6 +71,7 @@ export class ChangesService {
       const priced = priceDraft(draft, await this.terms(tx, jobId));
       const of = { firmId: job.firmId, jobId, changeId };
       if (change.version !== version || !(await this.repository.edit(tx, of, version, priced))) throw new Problem('stale', { version: change.version });
+      await this.setPhotos(tx, of, draft);
       return changeId;
     });
   }
@@ -80,7 +83,9 @@ export class ChangesService {
       if (!mayChange(change.state, 'supersede')) throw new Problem('wrong_state', { detail: 'Only what was sent out and is not signed can be revised.' });
       const priced = priceDraft(draft, await this.terms(tx, jobId));
       const revision = nextLetter(change.revision);
-      await this.repository.insert(tx, { firmId: job.firmId, jobId, changeId: draft.id }, { number: change.number, revision }, priced, this.clock.now());
+      const of = { firmId: job.firmId, jobId, changeId: draft.id };
+      await this.repository.insert(tx, of, { number: change.number, revision }, priced, this.clock.now());
+      await this.setPhotos(tx, of, draft);
       await this.record.append(tx, { firmId: job.firmId, jobId, chain: 'firm', act: 'change.revised', by: actor.personId, data: { change: changeId, revision: draft.id } });
       return draft.id;
     });
@@ -118,6 +123,11 @@ export class ChangesService {
     const facts = await this.facts.find(tx, jobId, changeId);
     if (!facts || !visibleStates(roles).includes(facts.change.state)) throw new Problem('not_found');
     return changeView(facts, roles, { personId: actor.personId, today: this.clock.today(facts.job.timeZone) });
+  }
+
+  private async setPhotos(tx: Tx, of: OfChange, { photoIds = [] }: Pick<DraftChange, 'photoIds'>): Promise<void> {
+    const chosen = [...new Set(photoIds)];
+    if ((await this.repository.setPhotos(tx, of, chosen)) !== chosen.length) throw Problem.field('/photoIds', 'Choose photos of this job that can be shown.');
   }
 
   private async terms(tx: Tx, jobId: string) {

@@ -35,7 +35,7 @@ export class ProblemFilter implements ExceptionFilter {
 }
 
 /** The problem that an error stands for. */
-export function asProblem(error: unknown): Problem {
+function asProblem(error: unknown): Problem {
   if (error instanceof Problem) return error;
   if (error instanceof InvalidInput) return Problem.field(`/${error.field.replaceAll('.', '/')}`, sentence(error.rule), 'computation');
   if (error instanceof HttpException) {

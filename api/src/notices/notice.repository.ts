@@ -6,7 +6,7 @@ import type { Tx } from '../common/unit-of-work.ts';
 import { QueueRepository } from '../queue/queue.repository.ts';
 import type { NoticeKind } from './templates.ts';
 
-export type Receiver = { personId: string } | { email: string; name: string };
+type Receiver = { personId: string } | { email: string; name: string };
 
 export interface Notice {
   firmId: string;

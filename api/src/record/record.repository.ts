@@ -4,7 +4,7 @@ import { Clock } from '../common/clock.ts';
 import type { Tx } from '../common/unit-of-work.ts';
 
 /** Which chain an entry stands in: what the whole job sees, or what the firm keeps to itself. */
-export type Chain = 'shared' | 'firm';
+type Chain = 'shared' | 'firm';
 
 export interface RecordEntry {
   firmId: string;

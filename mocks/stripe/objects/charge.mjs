@@ -62,7 +62,7 @@ export function newCharge(act, intent, method, { status }) {
 }
 
 /** @type {NonNullable<Charge['outcome']>} */
-export const authorized = {
+const authorized = {
   advice_code: null,
   network_advice_code: null,
   network_decline_code: null,

@@ -27,7 +27,7 @@ export function newPaymentMethod(act, type, payer, last4) {
 }
 
 /** @param {{ email: string | null, name: string | null }} payer */
-export const billing = (payer) => ({
+const billing = (payer) => ({
   address: { city: null, country: null, line1: null, line2: null, postal_code: null, state: null },
   email: payer.email,
   name: payer.name,

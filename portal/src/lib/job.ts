@@ -3,7 +3,7 @@ import type { Job } from '@tallypole/shared/schemas/jobs';
 import { useParams } from 'react-router-dom';
 import { get } from './http.ts';
 
-export const jobQuery = (jobId: string) => queryOptions({ queryKey: ['jobs', jobId], queryFn: ({ signal }) => get<Job>(`jobs/${jobId}`, signal) });
+const jobQuery = (jobId: string) => queryOptions({ queryKey: ['jobs', jobId], queryFn: ({ signal }) => get<Job>(`jobs/${jobId}`, signal) });
 
 export function useJobId(): string {
   const { jobId } = useParams();

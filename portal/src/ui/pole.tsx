@@ -1,7 +1,10 @@
 import { formatMoney } from '@tallypole/shared/money';
 import { polePicture, poleRows, type Band, type PoleInput } from '@tallypole/shared/pole';
-import { useId, useRef, type KeyboardEvent } from 'react';
+import { useId, useRef, useState, type MouseEvent } from 'react';
 import { Link } from 'react-router-dom';
+import { BandFacts } from './band-facts.tsx';
+import { moveFocus } from './move-focus.ts';
+import { PoleStrip } from './pole-strip.tsx';
 import classes from './pole.module.css';
 
 const HEIGHT = 620;
@@ -15,12 +18,12 @@ export interface PoleProps {
   bandHref: (milestoneId: string | null) => string;
 }
 
-/** The story pole: a rod beside the page on a desk, a strip along the top on a phone. Arrow keys go from band to band, Enter opens one. */
+/** The story pole: a rod beside the page on a desk, a strip along the top on a phone. Hover, tap or arrow keys open a band, Enter goes there. */
 export function Pole({ input, bandHref, strip = false }: PoleProps & { strip?: boolean }) {
   if (input.milestones.length === 0 && input.general.scheduledCents === 0) return <p className="quiet">The pole stands here once the schedule of values is in.</p>;
   return (
     <nav aria-label="Milestones from the ground up">
-      {strip ? <Strip input={input} bandHref={bandHref} /> : <Rod input={input} bandHref={bandHref} />}
+      {strip ? <PoleStrip input={input} bandHref={bandHref} /> : <Rod input={input} bandHref={bandHref} />}
       <p className={classes['key']} aria-hidden="true">
         <span><i><b className={`${classes['fill'] ?? ''} ${classes['proven'] ?? ''}`} style={{ width: '100%' }} /></i>proven</span>
         {input.prices ? <span><i><b className={`${classes['fill'] ?? ''} ${classes['billed'] ?? ''}`} style={{ width: '100%' }} /></i>billed</span> : null}
@@ -36,8 +39,15 @@ function Rod({ input, bandHref }: PoleProps) {
   const rows = poleRows(input);
   const rod = useRef<HTMLDivElement>(null);
   const pattern = useId();
+  const [tapped, setTapped] = useState<number | null>(null);
+  // a finger has no hover: the first tap opens the band, the second goes there
+  const onClick = (event: MouseEvent, band: number) => {
+    if ((event.nativeEvent as PointerEvent).pointerType !== 'touch' || tapped === band) return;
+    event.preventDefault();
+    setTapped(band);
+  };
   return (
-    <div className={classes['rod']} ref={rod} style={{ height: HEIGHT + 2 }} onKeyDown={(event) => moveFocus(event, rod.current, { up: 1, down: -1 })}>
+    <div className={classes['rod']} ref={rod} style={{ height: HEIGHT + 2 }} onKeyDown={(event) => moveFocus(event, rod.current)}>
       <svg width={LEFT + ROD} height={HEIGHT + 2} viewBox={`0 -1 ${LEFT + ROD} ${HEIGHT + 2}`} aria-hidden="true">
         <defs>
           <pattern id={pattern} width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)">
@@ -60,14 +70,24 @@ function Rod({ input, bandHref }: PoleProps) {
         {picture.pointerTop === null ? null : <path d={`M${LEFT - 1} ${picture.pointerTop} l-9 -5 v10 z`} fill="var(--graphite)" />}
       </svg>
       {picture.bands.map((band, i) => (
-        <Link key={band.id ?? `general-${i}`} to={bandHref(band.id)} className={`${classes['band'] ?? ''} ${band.provenHeight > 0 && band.provenHeight < band.height ? (classes['now'] ?? '') : ''}`} style={{ top: band.top, height: Math.max(band.height, 2) }} aria-label={`${band.name}: ${band.caption}`}>
+        <Link
+          key={band.id ?? `general-${i}`}
+          to={bandHref(band.id)}
+          className={`${classes['band'] ?? ''} ${band.provenHeight > 0 && band.provenHeight < band.height ? (classes['now'] ?? '') : ''}`}
+          style={{ top: band.top, height: Math.max(band.height, 2) }}
+          aria-label={`${band.name}: ${band.caption}`}
+          data-open={tapped === i || undefined}
+          onClick={(event) => onClick(event, i)}
+        >
           {band.showsLabel ? (
             <span className={classes['label']}>
               {`${band.name} `}
               <span>{band.caption}</span>
             </span>
           ) : null}
-          <BandCard band={band} row={rows[i]} prices={input.prices} />
+          <span className={classes['card']} aria-hidden="true">
+            <BandFacts band={band} row={rows[i]} prices={input.prices} />
+          </span>
         </Link>
       ))}
     </div>
@@ -88,61 +108,6 @@ function BandShape({ band, pattern }: { band: Band; pattern: string }) {
       <rect x={LEFT} y={band.top} width={ROD} height={band.height} fill="none" stroke="var(--graphite)" />
     </g>
   );
-}
-
-function BandCard({ band, row, prices }: { band: Band; row: ReturnType<typeof poleRows>[number] | undefined; prices: boolean }) {
-  return (
-    <span className={classes['card']} aria-hidden="true">
-      <strong>{band.name}</strong>, {band.caption}
-      {row && prices ? (
-        <dl>
-          <dt>Scheduled</dt>
-          <dd>{formatMoney(row.scheduledCents)}</dd>
-          <dt>Proven</dt>
-          <dd>{formatMoney(row.provenCents)}</dd>
-          <dt>Billed</dt>
-          <dd>{formatMoney(row.billedCents)}</dd>
-          <dt>Paid</dt>
-          <dd>{formatMoney(row.paidCents)}</dd>
-        </dl>
-      ) : null}
-      {band.notches.map((notch) => (
-        <span key={notch.id} style={{ display: 'block' }}>
-          {notch.label}
-        </span>
-      ))}
-    </span>
-  );
-}
-
-function Strip({ input, bandHref }: PoleProps) {
-  const picture = polePicture(input, 100);
-  const strip = useRef<HTMLDivElement>(null);
-  const share = (part: number, whole: number) => (whole > 0 ? `${(part / whole) * 100}%` : '0');
-  const fill = (kind: string) => `${classes['fill'] ?? ''} ${classes[kind] ?? ''}`;
-  return (
-    <div className={classes['strip']} ref={strip} onKeyDown={(event) => moveFocus(event, strip.current, { up: 1, down: -1 })}>
-      {picture.bands.map((band, i) => (
-        <Link key={band.id ?? `general-${i}`} to={bandHref(band.id)} className={classes['part']} style={{ flex: `${band.height} 1 0` }} aria-label={`${band.name}: ${band.caption}`}>
-          <span className={fill('proven')} style={{ width: share(band.provenHeight, band.height) }} />
-          <span className={fill('billed')} style={{ width: share(band.billedHeight, band.height) }} />
-          <span className={fill('paid')} style={{ width: share(band.paidHeight, band.height) }} />
-        </Link>
-      ))}
-    </div>
-  );
-}
-
-/** Up and right go towards the roof. */
-function moveFocus(event: KeyboardEvent, container: HTMLElement | null, { up, down }: { up: number; down: number }): void {
-  const steps: Record<string, number> = { ArrowUp: up, ArrowRight: up, ArrowDown: down, ArrowLeft: down };
-  const by = steps[event.key];
-  if (by === undefined || !container) return;
-  const bands = [...container.querySelectorAll<HTMLElement>('a')];
-  const at = bands.indexOf(document.activeElement as HTMLElement);
-  if (at < 0) return;
-  event.preventDefault();
-  bands[Math.min(bands.length - 1, Math.max(0, at + by))]?.focus();
 }
 
 function PoleTable({ input }: { input: PoleInput }) {

@@ -1,7 +1,7 @@
 import { v7 } from 'uuid';
 import type { Draw } from '@tallypole/shared/schemas/draws';
 import { ChangeWork, demoChanges } from './change-work.ts';
-import { demoTerms, type Stage } from './demo.ts';
+import { demoTerms, type Stage } from './stage.ts';
 import { juniperPhases, scheduleOf } from './schedules.ts';
 import { SiteWork, sitePlace } from './site-work.ts';
 
@@ -23,7 +23,7 @@ async function setUp(stage: Stage) {
   const { schedule, milestoneId } = scheduleOf(juniperPhases, (i) => calendar.date(-80 + i * 36));
   await marit.post(`jobs/${jobId}/schedule`, schedule);
   await marit.post(`jobs/${jobId}/site`, { latitude: sitePlace.latitude, longitude: sitePlace.longitude, radiusM: 75 });
-  await marit.post(`jobs/${jobId}/loan`, { id: v7(), lenderName: 'Fallbrook Savings', amountCents: 36_000_000, constructionCents: 34_000_000, equityFirstCents: 4_000_000, holdbackRate: 0, consentLimitCents: 500_000, shortfall: 'homeowner', route: 'builder' });
+  await marit.post(`jobs/${jobId}/loan`, { id: v7(), lenderName: 'Fallbrook Savings', amountCents: 36_000_000, constructionCents: 34_000_000, equityFirstCents: 4_000_000, holdbackRate: 1000, consentLimitCents: 500_000, shortfall: 'homeowner', route: 'builder' });
   for (const [email, role] of [['ines@moreau.example', 'homeowner'], ['theo@moreau.example', 'homeowner'], ['ruth@fallbrook-bank.example', 'lender'], ['omar@haddad-inspection.example', 'inspector'], ['greta@lindqvist-structural.example', 'designer']] as const) {
     await stage.invite(marit, jobId, email, role);
   }

@@ -1,4 +1,4 @@
-import { demoTerms, type Stage } from './demo.ts';
+import { demoTerms, type Stage } from './stage.ts';
 import { scheduleOf, tanagerPhases } from './schedules.ts';
 import { SiteWork } from './site-work.ts';
 

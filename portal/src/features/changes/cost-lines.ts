@@ -19,7 +19,7 @@ const isNumber = (text: string): string | null => (/^\d{1,12}(\.\d{1,4})?$/.test
 
 /** The sheet's columns: what a change adds and takes out. */
 export const columns: readonly SheetColumn<CostLine>[] = [
-  { key: 'description', title: 'What', edit: true, text: ({ description }) => description, problem: ({ description }) => (description.trim() === '' ? 'Say what it is.' : null) },
+  { key: 'description', title: 'What', edit: true, text: ({ description }) => description, problem: ({ description, unitCost }) => (description.trim() === '' && unitCost !== '0' ? 'Say what it is.' : null) },
   { key: 'effect', title: 'Added or taken out', width: '8rem', edit: true, text: ({ effect }) => effect, choices: [{ value: 'add', label: 'added' }, { value: 'deduct', label: 'taken out' }], show: ({ effect }) => (effect === 'add' ? 'added' : 'taken out') },
   { key: 'class', title: 'Kind', width: '8rem', edit: true, text: (line) => line.class, choices: ['labor', 'material', 'equipment', 'subcontract', 'fee'].map((value) => ({ value, label: value })) },
   { key: 'quantity', title: 'Quantity', width: '6rem', align: 'right', edit: true, inputMode: 'decimal', text: ({ quantity }) => quantity, problem: ({ quantity }) => isNumber(quantity) },

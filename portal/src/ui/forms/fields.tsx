@@ -1,6 +1,6 @@
-import { Checkbox, NativeSelect, Textarea, TextInput } from '@mantine/core';
+import { ActionIcon, Checkbox, NativeSelect, Popover, Textarea, TextInput } from '@mantine/core';
 import { formatMoney, formatRate, parseMoney, parseRate } from '@tallypole/shared/money';
-import { useState, type ReactNode } from 'react';
+import { lazy, Suspense, useState, type ReactNode } from 'react';
 import { readDate, writtenDate } from '../../lib/dates.ts';
 import classes from './form.module.css';
 import type { FieldProps } from './use-act-form.ts';
@@ -41,13 +41,20 @@ interface TypedProps extends Common {
   shown: (value: number | string) => string;
   inputMode: 'text' | 'decimal';
   section?: string;
+  /** Another way to enter the value, at the right end of the field. */
+  picker?: (value: string | null, choose: (text: string) => void) => ReactNode;
 }
 
 /** Takes what people type, keeps it, and says below how it was read. The form holds the value, or the text where it can't be read. */
-function TypedField({ field, label, hint, read, write, shown, inputMode, section, autoFocus }: TypedProps) {
+function TypedField({ field, label, hint, read, write, shown, inputMode, section, autoFocus, picker }: TypedProps) {
   const given = field.value as unknown as number | string | null;
   const [typed, setTyped] = useState(() => (typeof given === 'number' ? write(given) : (given ?? '')));
   const understood = typed.trim() === '' ? null : read(typed);
+  const enter = (text: string) => {
+    setTyped(text);
+    const value = text.trim() === '' ? null : read(text);
+    field.onChange(value ?? text);
+  };
   return (
     <div>
       <TextInput
@@ -61,12 +68,9 @@ function TypedField({ field, label, hint, read, write, shown, inputMode, section
         value={typed}
         data-autofocus={autoFocus}
         leftSection={section}
-        onChange={(event) => {
-          const text = event.currentTarget.value;
-          setTyped(text);
-          const value = text.trim() === '' ? null : read(text);
-          field.onChange(value ?? text);
-        }}
+        rightSection={picker?.(typeof understood === 'string' ? understood : null, enter)}
+        rightSectionWidth={picker ? 44 : undefined}
+        onChange={(event) => enter(event.currentTarget.value)}
       />
       <div className={classes['read']} aria-live="polite">
         {understood === null ? '' : shown(understood)}
@@ -115,8 +119,39 @@ export const DateField = ({ near, ...props }: Common & { near: string }) => (
     read={(typed) => readDate(typed, near)}
     write={String}
     shown={(value) => writtenDate(String(value), true)}
+    picker={(value, choose) => <CalendarButton label={props.label} value={value} near={near} onChange={choose} />}
   />
 );
+
+const Calendar = lazy(() => import('./calendar.tsx'));
+
+/** For a near day it is quicker to choose than to type. */
+function CalendarButton({ label, value, near, onChange }: { label: string; value: string | null; near: string; onChange: (date: string) => void }) {
+  const [opened, setOpened] = useState(false);
+  return (
+    <Popover opened={opened} onChange={setOpened} position="bottom-end" shadow="md" trapFocus returnFocus>
+      <Popover.Target popupType="dialog">
+        <ActionIcon variant="subtle" size={36} aria-label={`Choose from a calendar: ${label}`} onClick={() => setOpened(!opened)}>
+          <svg width="18" height="18" viewBox="0 0 18 18" fill="none" stroke="currentColor" strokeWidth="1.5" aria-hidden="true">
+            <path d="M2.5 4.5h13v11h-13zM2.5 7.5h13M6 2v4M12 2v4" />
+          </svg>
+        </ActionIcon>
+      </Popover.Target>
+      <Popover.Dropdown aria-label={label}>
+        <Suspense fallback="…">
+          <Calendar
+            value={value}
+            near={near}
+            onChange={(date) => {
+              onChange(date);
+              setOpened(false);
+            }}
+          />
+        </Suspense>
+      </Popover.Dropdown>
+    </Popover>
+  );
+}
 
 /** A whole number of days or pieces. */
 export const NumberField = (props: Common) => (
