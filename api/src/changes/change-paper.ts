@@ -1,5 +1,5 @@
 import { formatChange, formatMoney } from '@tallypole/shared/money';
-import type { Content } from 'pdfmake/interfaces.js';
+import type { Column, Content } from 'pdfmake/interfaces.js';
 import { writtenBusinessDate, writtenDate } from '../common/written-date.ts';
 import { beforeAfter, ruledTable } from '../documents/tables.ts';
 import type { Paper } from '../documents/pdf.ts';
@@ -45,9 +45,9 @@ export function changePaper(facts: ChangeFacts, today: string, pictures: readonl
 
 /** Two pictures beside each other, each with its note. */
 function pictureRows({ photos }: ChangeFacts, pictures: readonly Buffer[]): Content {
-  const cells = pictures.map((picture, i): Content => ({ stack: [{ image: `data:image/jpeg;base64,${picture.toString('base64')}`, fit: [232, 174] }, { text: photos[i]?.note ?? '', style: 'small', margin: [0, 3, 0, 0] }], width: '*' }));
-  const rows = Array.from({ length: Math.ceil(cells.length / 2) }, (_, i): Content => ({ columns: [...cells.slice(i * 2, i * 2 + 2), ...(i * 2 + 1 < cells.length ? [] : [{ text: '', width: '*' }])], columnGap: 20, margin: [0, 8, 0, 0], unbreakable: true } as Content));
-  return { stack: rows };
+  const cells = pictures.map((picture, i): Column => ({ stack: [{ image: `data:image/jpeg;base64,${picture.toString('base64')}`, fit: [232, 174] }, { text: photos[i]?.note ?? '', style: 'small', margin: [0, 3, 0, 0] }], width: 232 }));
+  const pairs = cells.filter((_, i) => i % 2 === 0).map((_, i) => cells.slice(i * 2, i * 2 + 2));
+  return { stack: pairs.map((columns): Content => ({ columns, columnGap: 20, margin: [0, 8, 0, 0], unbreakable: true })) };
 }
 
 const scopeTable = (scope: ChangeFacts['scope']): Content => ({
@@ -60,7 +60,8 @@ function structural(reviews: ChangeFacts['reviews']): Content[] {
     `${reviewWords[review.kind]}, ${review.reviewerName}${review.license ? ` (${review.license})` : ''}\n${review.fileName}, SHA-256 ${review.fileSha256.slice(0, 16)}…`,
     writtenBusinessDate(review.reviewedOn),
   ]);
-  return [{ text: 'Structure', style: 'heading' }, { text: structuralCaution, margin: [0, 0, 0, 6] }, ruledTable(['Reviewed by', 'on'], rows, ['*', 'auto'])];
+  // heading, caution and reviews stay together on a page, as long as they fit on one
+  return [{ unbreakable: rows.length <= 6, stack: [{ text: 'Structure', style: 'heading' }, { text: structuralCaution, margin: [0, 0, 0, 6] }, ruledTable(['Reviewed by', 'on'], rows, ['*', 'auto'])] }];
 }
 
 export interface Anchor {

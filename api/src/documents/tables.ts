@@ -7,7 +7,7 @@ export function ruledTable(head: readonly string[], rows: readonly (readonly str
   const last = head.length - 1;
   const cell = (text: string, i: number, style?: string): TableCell => ({ text, alignment: i === last ? 'right' : 'left', noWrap: i === last, ...(style ? { style } : {}) });
   return {
-    table: { headerRows: 1, dontBreakRows: true, widths: [...widths], body: [head.map((text, i) => cell(text, i, 'small')), ...rows.map((row) => row.map((text, i) => cell(text, i)))] },
+    table: { headerRows: 1, keepWithHeaderRows: 1, dontBreakRows: true, widths: [...widths], body: [head.map((text, i) => cell(text, i, 'small')), ...rows.map((row) => row.map((text, i) => cell(text, i)))] },
     layout: { hLineWidth: (i) => (i === 0 ? 0 : 0.6), vLineWidth: () => 0, hLineColor: () => RULE, paddingLeft: () => 0, paddingRight: (i) => (i === last ? 0 : 10), paddingTop: () => 5, paddingBottom: () => 5 },
   };
 }
