@@ -1,11 +1,17 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from '@jest/globals';
+import { spawnSync } from 'node:child_process';
+import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import path from 'node:path';
+import request from 'supertest';
 import { v7 } from 'uuid';
 import type { Change } from '@tallypole/shared/schemas/changes';
 import type { Draw } from '@tallypole/shared/schemas/draws';
+import type { Photo } from '@tallypole/shared/schemas/photos';
 import { principalWithFirm } from './support/builders.ts';
-import { changeAt, costLine, issueChange, signature, signChange, startChange, withPaper } from './support/change-builders.ts';
+import { changeAt, changeDraft, costLine, issueChange, signature, signChange, startChange, withPaper } from './support/change-builders.ts';
 import { approve, drawAt, lentJob, made, payDeposit, prove, sentDraw, type LentJob } from './support/draw-builders.ts';
-import { House } from './support/house.ts';
+import { House, until } from './support/house.ts';
 
 describe('what a change does', () => {
   let house: House;
@@ -90,5 +96,31 @@ describe('what a change does', () => {
       detail:
         'What signing does has changed since you opened it. You were shown +$1,089.00 and 0 days, with a contract sum of $401,089.00 and completion by June 30, 2027. It is now +$1,089.00 and 0 days, with a contract sum of $402,040.37 and completion by July 2, 2027. Look at it again before you decide.',
     });
+  });
+
+  it('is explained with photos of the job, which are part of what is signed and stand in the paper', async () => {
+    const photoId = await prove(lent, 'Foundation');
+    await until(async () => made<Photo>(await lent.principal.get(`/jobs/${lent.job.id}/photos/${photoId}`)).state === 'ready', 'the photo');
+    const plain = await issueChange(lent, await startChange(lent));
+    const seen = await issueChange(lent, await startChange(lent, { photoIds: [photoId] }));
+    expect(seen.photos).toMatchObject([{ id: photoId, width: 320, height: 240 }]);
+    expect(JSON.parse((await house.sql<{ effect: string }>('select effect from document where id = $1', [seen.document?.id]))[0]?.effect ?? '{}')).toMatchObject({ change: { photos: [expect.stringMatching(/^[0-9a-f]{64}$/)] } });
+    const pictures = async (id: string) => {
+      const { body } = await request(url).get(`/api/jobs/${lent.job.id}/documents/${id}`).set('Cookie', lent.ann.cookie()).buffer(true).parse((res, done) => {
+        const chunks: Buffer[] = [];
+        res.on('data', (chunk: Buffer) => chunks.push(chunk)).on('end', () => done(null, Buffer.concat(chunks)));
+      });
+      const dir = mkdtempSync(path.join(tmpdir(), 'paper-'));
+      writeFileSync(path.join(dir, 'paper.pdf'), body as Buffer);
+      const listed = spawnSync('pdfimages', ['-list', path.join(dir, 'paper.pdf')], { encoding: 'utf8' }).stdout;
+      rmSync(dir, { recursive: true });
+      return listed.split('\n').filter((line) => /jpeg/.test(line)).length;
+    };
+    expect([await pictures(plain.document?.id ?? ''), await pictures(seen.document?.id ?? '')]).toEqual([0, 1]);
+
+    const elsewhere = await lentJob(house, url);
+    const foreign = await prove(elsewhere, 'Foundation');
+    const refused = await lent.principal.post(`/jobs/${lent.job.id}/changes`, changeDraft(lent, { photoIds: [foreign] }));
+    expect(refused.body).toMatchObject({ errors: [{ pointer: '/photoIds' }] });
   });
 });

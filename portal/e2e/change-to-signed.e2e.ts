@@ -2,11 +2,16 @@ import type { Browser } from 'playwright-core';
 import path from 'node:path';
 import { writeFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { lentJob, type LentJob } from '../../api/test/support/draw-builders.ts';
+import { lentJob, prove, type LentJob } from '../../api/test/support/draw-builders.ts';
 import { House } from '../../api/test/support/house.ts';
 import { pdf } from '../../api/test/support/uploads.ts';
 import { desk, openBrowser, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+
+const shots = process.env['SHOTS'];
+const shoot = async (who: Someone, name: string): Promise<void> => {
+  if (shots) await who.shot(path.join(shots, `${name}.png`));
+};
 
 describe('a change, from its price to the last signature', () => {
   let house: House;
@@ -20,6 +25,7 @@ describe('a change, from its price to the last signature', () => {
     await house.worker({ env: { PUBLIC_URL: url } });
     browser = await openBrowser();
     lent = await lentJob(house, url);
+    await prove(lent, 'Foundation');
   });
   afterAll(async () => {
     await browser.close();
@@ -36,6 +42,7 @@ describe('a change, from its price to the last signature', () => {
     await builder.page.getByLabel('It belongs to').selectOption({ label: 'Framing' });
     await builder.fill('More calendar days', '2');
     await builder.page.getByLabel('The price holds until', { exact: true }).fill('March 19, 2099');
+    await builder.page.getByRole('checkbox', { name: 'Photo 1' }).check();
     // pasted from a spreadsheet: one line taken out, one added, one for labor
     const sheet = builder.page.getByRole('grid', { name: 'Lines of the change' });
     await sheet.getByRole('gridcell').first().click();
@@ -46,6 +53,7 @@ describe('a change, from its price to the last signature', () => {
       document.activeElement?.dispatchEvent(new ClipboardEvent('paste', { clipboardData: data, bubbles: true, cancelable: true }));
     }, rows);
     await builder.page.getByRole('status').filter({ hasText: '+$951.37' }).waitFor();
+    await shoot(builder, 'editor-1280');
     expect(await builder.axe()).toEqual([]);
     await builder.press('Keep as draft');
 
@@ -62,6 +70,7 @@ describe('a change, from its price to the last signature', () => {
     await builder.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
     await builder.press('Attach the review');
     await builder.sees('joist-sheet.pdf');
+    await shoot(builder, 'firm-1280');
     await builder.press(/^Send out for \+\$951\.37/);
     await builder.sees('Waits for a decision');
 
@@ -72,8 +81,9 @@ describe('a change, from its price to the last signature', () => {
     for (const words of ['Deeper joists in the great room', '$400,951.37', 'July 2, 2027', 'P. Wren, PE', 'you, in cash']) await ann.sees(words);
     expect(await ann.text()).not.toMatch(/mark-up|overhead|net cost/i);
     expect(await ann.overflows()).toBe(false);
+    await shoot(ann, 'decide-360');
     expect(await ann.axe()).toEqual([]);
-    if (process.env['SHOTS']) await ann.shot(`${process.env['SHOTS']}/decide-360.png`);
+    await ann.page.emulateMedia({ colorScheme: 'light', reducedMotion: 'reduce' });
 
     // a figure opens its arithmetic
     await ann.page.getByRole('button', { name: /Contract sum after signing/ }).click();
@@ -97,14 +107,21 @@ describe('a change, from its price to the last signature', () => {
     await ben.signIn(new URL(link).pathname);
     await ben.fill('Type your name to sign', 'Ben Moss');
     await ben.page.getByLabel(/I agree to sign this change electronically/).check();
-    if (process.env['SHOTS']) await ben.shot(`${process.env['SHOTS']}/decide-360-dark.png`);
+    await shoot(ben, 'decide-360-dark');
     await ben.press('Sign for +$951.37');
     await ben.page.getByRole('link', { name: 'The signed paper (PDF)' }).waitFor();
+    await ben.page.emulateMedia({ colorScheme: 'light', reducedMotion: 'reduce' });
+    await shoot(ben, 'signed-360');
+    await ben.page.getByRole('img', { name: /Picture 1 of/ }).waitFor();
     await house.mail.wait(lent.lender.email, /Change 1 .* is signed: \+\$951\.37/);
 
     await builder.goto(`/jobs/${lent.job.id}`);
     await builder.sees('$400,951.37');
-    if (process.env['SHOTS']) await builder.shot(`${process.env['SHOTS']}/house-1280.png`);
+    await shoot(builder, 'house-1280');
+    // what was sent is not offered again: the next change starts empty
+    await builder.goto(`/jobs/${lent.job.id}/changes/new`);
+    await builder.page.getByLabel('What it is, in a few words').waitFor();
+    expect(await builder.page.getByLabel('What it is, in a few words').inputValue()).toBe('');
     for (const someone of [builder, ann, ben]) expect(someone.troubles).toEqual([]);
   });
 });

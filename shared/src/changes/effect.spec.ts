@@ -4,7 +4,7 @@ import { changeEffect, changeSteps, type ChangeSnapshot } from './index.ts';
 
 const base: ChangeSnapshot = {
   job: { contractSumAsSignedCents: 48_650_000, changesApprovedCents: 0, completeBy: '2027-10-22', dayKind: 'working', daysApproved: 0, earnedToDateCents: 10_000_000, hasLoan: true, consentLimitCents: 500_000 },
-  change: { number: 3, revision: '', title: 'Deeper joists', reason: 'Less bounce.', chargedCents: 391_240, days: 2, goodUntil: '2027-03-19', structural: true, milestoneName: 'Floor frame', lines: [{ description: 'Joists', effect: 'add', cents: 391_240 }], scope: [], reviews: [] },
+  change: { number: 3, revision: '', title: 'Deeper joists', reason: 'Less bounce.', chargedCents: 391_240, days: 2, goodUntil: '2027-03-19', structural: true, milestoneName: 'Floor frame', lines: [{ description: 'Joists', effect: 'add', cents: 391_240 }], scope: [], photos: [], reviews: [] },
 };
 const change = (more: Partial<ChangeSnapshot['change']>, job: Partial<ChangeSnapshot['job']> = {}) => changeEffect({ job: { ...base.job, ...job }, change: { ...base.change, ...more } });
 

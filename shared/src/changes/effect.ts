@@ -46,6 +46,8 @@ export interface ChangeSnapshot {
     milestoneName: string | null;
     lines: readonly OwnersLine[];
     scope: readonly ScopeLine[];
+    /** SHA-256 of each picture it is explained with. */
+    photos: readonly string[];
     reviews: readonly ReviewFact[];
   };
 }

@@ -53,6 +53,8 @@ const DraftFields = {
   presentation: z.enum(presentations),
   noCharge: z.boolean(),
   lines: z.array(CostLine).max(500, 'Enter at most 500 lines.'),
+  /** Photos of the job that explain it, in their order. */
+  photoIds: z.array(Id).max(6, 'Choose at most 6 photos.').optional(),
   /** Null: the firm's own terms. */
   terms: PricingTerms.nullable(),
   /** Why these terms differ from the firm's. */
@@ -78,6 +80,7 @@ const cents = z.int();
 export const OwnersLine = z.object({ description: z.string(), effect: z.enum(['add', 'deduct']), cents });
 /** What is built or taken out, without a price: labor and fees are no part of it. */
 export const ScopeLine = z.object({ description: z.string(), effect: z.enum(['add', 'deduct']), quantity: z.string(), unit: z.string() });
+export const ChangePhoto = z.object({ id: Id, note: z.string(), width: z.int(), height: z.int() });
 export const Review = z.object({ id: Id, kind: z.enum(reviewKinds), fileId: Id, fileName: z.string(), fileSha256: z.string(), reviewerName: z.string(), license: z.string(), reviewedOn: BusinessDate, note: z.string(), /** False where what is built was altered after it. */ current: z.boolean() });
 /** What is left to bill moves with every draw, so it is no part of what was agreed: null once signed. */
 const Figures = z.object({ contractSumCents: cents, completionDate: BusinessDate, leftToBillCents: cents.nullable() });
@@ -124,6 +127,7 @@ export const Change = ChangeRow.extend({
   version: Version,
   lines: z.array(OwnersLine),
   scope: z.array(ScopeLine),
+  photos: z.array(ChangePhoto),
   reviews: z.array(Review),
   effect: Effect.nullable(),
   steps: z.object({ contractSum: Step, completionDate: Step, leftToBill: Step, nextDraw: Step.nullable(), homeowner: Step.nullable() }).nullable(),

@@ -15,8 +15,23 @@ export const states: Readonly<Record<ChangeState, { words: string; meaning: Mean
 };
 
 /** What a change means for whoever builds. */
-export const forSite = (state: ChangeState): { words: string; meaning: Meaning } =>
-  state === 'approved' ? { words: 'Build this', meaning: 'settled' } : state === 'issued' || state === 'partly_signed' || state === 'draft' || state === 'in_review' ? { words: 'Not yet', meaning: 'waits' } : { words: 'Refused: build as drawn', meaning: 'refused' };
+export function forSite(state: ChangeState): { words: string; meaning: Meaning } {
+  switch (state) {
+    case 'approved':
+      return { words: 'Build this', meaning: 'settled' };
+    case 'draft':
+    case 'in_review':
+    case 'issued':
+    case 'partly_signed':
+      return { words: 'Not yet', meaning: 'waits' };
+    case 'superseded':
+      return { words: 'Replaced by a revision', meaning: 'neutral' };
+    case 'declined':
+    case 'lapsed':
+    case 'withdrawn':
+      return { words: 'Refused: build as drawn', meaning: 'refused' };
+  }
+}
 
 export const origins = [
   { value: 'homeowner_wish', label: "The homeowner's wish" },
@@ -41,7 +56,7 @@ export const reviewKinds = [
 
 /** Who pays it, said to one of those who would, or to somebody else. */
 export function funding(by: NonNullable<Change['effect']>['funding'], mine: boolean): { before: string; after: string } {
-  const cash = mine ? 'you, in cash' : 'the homeowner, in cash';
+  const cash = mine ? 'you, in cash' : 'the homeowner';
   switch (by) {
     case 'nothing_to_pay':
       return { before: 'nothing is to be paid', after: 'nobody' };

@@ -1,5 +1,6 @@
 import { queryOptions } from '@tanstack/react-query';
 import type { Change, ChangeList, FirmPricing, SetFirmPricing } from '@tallypole/shared/schemas/changes';
+import type { PhotoList } from '@tallypole/shared/schemas/photos';
 import { get, post } from '../../../lib/http.ts';
 
 const PAPER_MS = 1_500;
@@ -14,6 +15,9 @@ export const changeQuery = (jobId: string, changeId: string) =>
     queryFn: ({ signal }) => get<Change>(`jobs/${jobId}/changes/${changeId}`, signal),
     refetchInterval: ({ state: { data } }) => (data && awaitsPaper(data) ? PAPER_MS : data && isOut(data) ? ALIVE_MS : false),
   });
+
+/** The newest photos of the job, to choose among. */
+export const jobPhotosQuery = (jobId: string) => queryOptions({ queryKey: ['jobs', jobId, 'photos'], queryFn: ({ signal }) => get<PhotoList>(`jobs/${jobId}/photos?limit=100`, signal) });
 
 export const pricingQuery = (firmId: string) => queryOptions({ queryKey: ['firms', firmId, 'pricing'], queryFn: ({ signal }) => get<FirmPricing>(`firms/${firmId}/pricing`, signal) });
 export const setPricing = (firmId: string, input: SetFirmPricing, idempotencyKey: string): Promise<FirmPricing> => post(`firms/${firmId}/pricing`, input, { idempotencyKey });

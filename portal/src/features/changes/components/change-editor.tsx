@@ -13,6 +13,7 @@ import { LineSheet } from '../../../ui/line-sheet/line-sheet.tsx';
 import { actOnChange, pricingQuery } from '../api/changes.ts';
 import { applyEdits, columns, emptyLine } from '../cost-lines.ts';
 import { origins, presentations } from '../strings.ts';
+import { PictureChoice } from './picture-choice.tsx';
 import { TermsFields } from './terms-fields.tsx';
 import classes from './changes.module.css';
 import { useChanged } from './use-changed.ts';
@@ -35,6 +36,7 @@ const blank = (id: string) => ({
   goodUntil: '',
   presentation: 'itemized',
   noCharge: false,
+  photoIds: [] as string[],
   lines: [emptyLine()] as CostLine[],
   terms: null as PricingTermsInput | null,
   termsReason: '',
@@ -52,6 +54,7 @@ const valuesOf = (id: string, { cost, ...change }: Change): EditorValues => ({
   goodUntil: change.goodUntil,
   presentation: change.presentation,
   noCharge: change.noCharge,
+  photoIds: change.photos.map(({ id: photoId }) => photoId),
   lines: cost?.lines ?? [],
   terms: cost?.ownTerms ? cost.terms : null,
   termsReason: cost?.termsReason ?? '',
@@ -77,6 +80,7 @@ export function ChangeEditor({ job, from, as }: ChangeEditorProps) {
   return (
     <Form act={act} submitLabel={as === 'edit' ? 'Keep the draft' : as === 'revise' ? 'Make the revision' : 'Keep as draft'}>
       <Words act={act} job={job} />
+      <PictureChoice jobId={job.id} milestoneId={act.form.values.milestoneId} chosen={act.form.values.photoIds} onChange={(ids) => act.form.setFieldValue('photoIds', ids)} error={act.field('photoIds').error} />
       <div className={classes['wide']} style={{ width: 'min(860px, 90vw)' }}>
         <h2 style={{ marginBottom: 8 }}>Lines</h2>
         <LineSheet label="Lines of the change" rows={lines} rowKey={(line) => line.id} columns={columns} canGrow onEdit={(edits) => setLines(applyEdits(lines, edits))} />

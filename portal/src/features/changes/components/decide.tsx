@@ -13,6 +13,7 @@ import { usePresence } from '../../../ui/presence/use-presence.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { actOnChange } from '../api/changes.ts';
 import { dayCount, strings } from '../strings.ts';
+import classes from './changes.module.css';
 import { useChanged } from './use-changed.ts';
 
 export interface DecideProps {
@@ -71,18 +72,20 @@ function Sign({ job, change, onMoved, onDecline }: DecideProps & { onDecline: ()
       <p style={{ marginBottom: 12 }}>
         You agree to the change above, its price of {price} and {dayCount(change.days)}. {change.signersNeeded === 'all' ? waitsFor(change) : ''}
       </p>
-      <Form
-        act={act}
-        submitLabel={`Sign for ${price}`}
-        aside={
-          <Button variant="subtle" color="oxide" onClick={onDecline}>
-            Decline, and say why
-          </Button>
-        }
-      >
-        <TextField field={act.field('typedName')} label="Type your name to sign" hint={person.name ?? undefined} autoComplete="name" />
-        <CheckboxField field={act.field('consent')} label={strings.consent} />
-      </Form>
+      <div className={classes['decide']}>
+        <Form
+          act={act}
+          submitLabel={`Sign for ${price}`}
+          aside={
+            <Button variant="subtle" color="oxide" onClick={onDecline}>
+              Decline, and say why
+            </Button>
+          }
+        >
+          <TextField field={act.field('typedName')} label="Type your name to sign" hint={person.name ?? undefined} autoComplete="name" />
+          <CheckboxField field={act.field('consent')} label={strings.consent} />
+        </Form>
+      </div>
       <p className="quiet" style={{ marginTop: 12 }}>
         The price holds until {writtenDate(change.goodUntil, true)}. {strings.refuse}
       </p>

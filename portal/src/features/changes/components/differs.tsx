@@ -9,7 +9,7 @@ type OwnersLine = Change['lines'][number];
 export function Differs({ change }: { change: Change }) {
   if (change.lines.length === 0) return <p style={{ marginTop: 16 }}>No price: {change.days > 0 ? 'it is about time alone.' : 'nothing is entered yet.'}</p>;
   const columns = [
-    { key: 'what', head: 'What differs', cell: (line: OwnersLine) => line.description },
+    { key: 'what', head: 'What', cell: (line: OwnersLine) => line.description },
     { key: 'how', head: 'Added or taken out', cell: (line: OwnersLine) => <span className="quiet">{line.effect === 'deduct' ? 'taken out' : 'added'}</span> },
     { key: 'price', head: 'Price', right: true, cell: (line: OwnersLine) => <MoneyChange cents={line.cents} /> },
   ];

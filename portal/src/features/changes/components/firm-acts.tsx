@@ -18,7 +18,7 @@ export function FirmActs({ job, change }: { job: Job; change: Change }) {
   return (
     <>
       {change.structural ? <AskReview job={job} change={change} /> : null}
-      {mayChange(change.state, 'edit') ? <SendOut job={job} change={change} /> : null}
+      {mayChange(change.state, 'edit') ? <SendOut job={job} change={change} key={change.version} /> : null}
       {mayChange(change.state, 'supersede') ? (
         <Section title="If it must be different">
           <p style={{ marginBottom: 12 }}>What was sent out is not edited. A revision takes its place under the same number, and is signed anew.</p>

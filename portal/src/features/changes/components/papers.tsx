@@ -10,7 +10,7 @@ export function Papers({ jobId, change, timeZone }: { jobId: string; change: Cha
   const signed = change.signers.some(({ signedAt }) => signedAt !== null);
   if (!paper && !signed) return null;
   return (
-    <Section title={change.state === 'approved' ? 'Signed' : 'Signatures'} ruled={false}>
+    <Section title={change.state === 'approved' ? 'Signed' : isOut(change) || signed ? 'Signatures' : 'The paper'} ruled={false}>
       {isOut(change) || signed ? (
         <ul style={{ listStyle: 'none', margin: '0 0 12px', padding: 0 }}>
           {change.signers.map((signer) => (
@@ -23,7 +23,7 @@ export function Papers({ jobId, change, timeZone }: { jobId: string; change: Cha
       ) : null}
       {paper ? (
         <p>
-          <a href={documentUrl(jobId, paper.id)}>{change.signedDocument ? 'The signed paper (PDF)' : 'The paper to be signed (PDF)'}</a>
+          <a href={documentUrl(jobId, paper.id)}>{change.signedDocument ? 'The signed paper (PDF)' : isOut(change) ? 'The paper to be signed (PDF)' : 'The paper as it was sent out (PDF)'}</a>
           <br />
           <span className="quiet" style={{ fontSize: 12.5, overflowWrap: 'anywhere' }}>
             SHA-256 {paper.sha256}

@@ -24,20 +24,18 @@ export function PricingFields<Values extends PricingValues>({ act, terms }: { ac
         ]}
       />
       <FieldRow>
-        <PercentField field={act.field('terms.laborBurdenRate')} label="Labor burden" hint="On labor priced bare; 0 if it is in the rates." />
+        <PercentField field={act.field('terms.laborBurdenRate')} label="Labor burden" hint="On labor priced bare." />
         <PercentField field={act.field('terms.insuranceRate')} label="Insurance or bond" hint="On the price before tax." />
       </FieldRow>
-      <FieldRow>
-        <SelectField
-          field={act.field('terms.tax.on')}
-          label="Sales tax is due on"
-          options={[
-            { value: 'materials', label: 'materials marked as taxed' },
-            { value: 'price', label: 'the whole price' },
-          ]}
-        />
-        <PercentField field={act.field('terms.tax.rate')} label="Sales tax" />
-      </FieldRow>
+      <PercentField field={act.field('terms.tax.rate')} label="Sales tax" />
+      <SelectField
+        field={act.field('terms.tax.on')}
+        label="Sales tax is due on"
+        options={[
+          { value: 'materials', label: 'materials marked as taxed' },
+          { value: 'price', label: 'the whole price' },
+        ]}
+      />
       <MoneyField field={act.field('terms.flatFeeCents')} label="Fee for each change" hint="For its paperwork; 0 if none." />
     </>
   );

@@ -17,7 +17,7 @@ export function ReviewForm({ job, change }: { job: Job; change: Change }) {
   const changed = useChanged(job.id);
   const [sent, setSent] = useState<number | null>(null);
   const act = useActForm({
-    name: `review-${change.id}`,
+    name: `review-${change.id}-${change.reviews.length}`,
     initialValues: { id, kind: 'engineered_sheet', fileId: '', reviewerName: '', license: '', reviewedOn: '', note: '' },
     schema: AttachReview,
     send: (values, key) => actOnChange(job.id, change.id, 'reviews', values, key),

@@ -18,6 +18,7 @@ import { ReviewForm } from '../components/review-form.tsx';
 import { ReviewList } from '../components/review-list.tsx';
 import { ScopeList } from '../components/scope-list.tsx';
 import { Differs } from '../components/differs.tsx';
+import { Pictures } from '../components/pictures.tsx';
 import { Papers } from '../components/papers.tsx';
 import { changeName, dayCount, forSite, states, strings } from '../strings.ts';
 
@@ -40,16 +41,17 @@ export function Component() {
         {prices ? null : <p className="quiet">{dayCount(change.days)}</p>}
       </PageHead>
       <p style={{ whiteSpace: 'pre-line', maxWidth: '68ch' }}>{change.reason}</p>
+      <Pictures jobId={job.id} change={change} />
       {change.supersededBy ? (
         <p>
           <Link to={`../changes/${change.supersededBy.id}`}>Revision {change.supersededBy.revision} has taken its place.</Link>
         </p>
       ) : null}
       {change.closedReason ? <Note>{change.closedReason}</Note> : null}
-      {change.structural ? <Structure job={job} change={change} /> : null}
       {prices && change.presentation === 'itemized' ? null : <ScopeList scope={change.scope} />}
       {prices ? <Differs change={change} /> : null}
       {change.effect && (isOut(change) || change.state === 'approved' || change.cost) ? <EffectView change={change} effect={change.effect} mine={may(job.roles, 'change.decide')} /> : null}
+      {change.structural ? <Structure job={job} change={change} /> : null}
       {change.cost ? <CostView cost={change.cost} /> : null}
       <Papers jobId={job.id} change={change} timeZone={job.timeZone} />
       {isOut(change) && may(job.roles, 'change.decide') ? <Decide job={job} change={change} onMoved={onMoved} /> : null}
