@@ -51,8 +51,12 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
     validateInputOnChange: failures > 0,
   });
   const { values } = form;
+  const latest = useRef(values);
+  // what was sent is not kept again by the renders that follow
+  const sent = useRef<Values | null>(null);
   useEffect(() => {
-    if (keep && form.isDirty()) keepDraft(name, values);
+    latest.current = values;
+    if (keep && values !== sent.current && form.isDirty()) keepDraft(name, values);
   }, [keep, name, values, form]);
 
   const failed = useCallback((problem: Problem | null) => {
@@ -67,6 +71,7 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
     try {
       const answer = await send(typed, idempotency.key);
       idempotency.spend();
+      sent.current = latest.current;
       dropDraft(name);
       setFailure(null);
       onDone(answer);
