@@ -4,7 +4,7 @@ import { writtenBusinessDate, writtenDate } from '../common/written-date.ts';
 import { beforeAfter, ruledTable } from '../documents/tables.ts';
 import type { Paper } from '../documents/pdf.ts';
 import { changeName, effectOf, nextDrawOf, type ChangeFacts, type SignerFact } from './change-facts.ts';
-import { fundingWords, nextDrawName, reviewWords, structuralCaution } from './words.ts';
+import { nextDrawName, paperFundingWords, reviewWords, structuralCaution } from './words.ts';
 
 const days = (count: number) => (count === 1 ? '1 day' : `${count} days`);
 
@@ -31,10 +31,9 @@ export function changePaper(facts: ChangeFacts, today: string, pictures: readonl
     lines.length > 0
       ? ruledTable(['', ''], [...lines.map((line) => [line.description, formatChange(line.cents)]), ['Price of the change', formatChange(change.chargedCents)]], ['*', 'auto'])
       : { text: `No price; time alone: ${days(change.days)}.` },
-    { text: 'What it does', style: 'heading' },
-    beforeAfter(effects),
+    { unbreakable: true, stack: [{ text: 'What it does', style: 'heading' }, beforeAfter(effects)] },
     ...(next ? [{ text: `The draw is worked out from what is proven and owed on ${writtenBusinessDate(today)}; it is no part of what is agreed.`, style: 'small', margin: [0, 4, 0, 0] } satisfies Content] : []),
-    { text: `Who pays it: ${fundingWords[effect.funding]}.${effect.needsLendersWord ? ' The sum is above what may be agreed without the lender.' : ''}`, margin: [0, 8, 0, 0] },
+    { text: `Who pays it: ${paperFundingWords[effect.funding]}.${effect.needsLendersWord ? ' The sum is above what may be agreed without the lender.' : ''}`, margin: [0, 8, 0, 0] },
     ...(change.milestoneName ? [{ text: `It lands on the milestone "${change.milestoneName}".` }] : []),
     ...(change.structural ? structural(reviews.filter(({ current }) => current)) : []),
     { text: 'By signing, the homeowners agree to the change above, its price and its days, as an addition to the contract. Everything else in the contract stays as it is.', margin: [0, 18, 0, 0] },
@@ -57,7 +56,7 @@ const scopeTable = (scope: ChangeFacts['scope']): Content => ({
 
 function structural(reviews: ChangeFacts['reviews']): Content[] {
   const rows = reviews.map((review) => [
-    `${reviewWords[review.kind]}, ${review.reviewerName}${review.license ? ` (${review.license})` : ''}\n${review.fileName}, SHA-256 ${review.fileSha256.slice(0, 16)}…`,
+    `${reviewWords[review.kind]}, ${review.reviewerName}${review.license ? ` (${review.license})` : ''}\n${review.fileName}\nSHA-256 ${review.fileSha256}`,
     writtenBusinessDate(review.reviewedOn),
   ]);
   // heading, caution and reviews stay together on a page, as long as they fit on one

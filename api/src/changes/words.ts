@@ -11,6 +11,14 @@ export const fundingWords: Readonly<Record<Funding, string>> = {
 /** The first draw in which a change is asked for. */
 export const nextDrawName = ({ milestoneName }: { milestoneName: string | null }): string => (milestoneName ? `Draw once "${milestoneName}" is proven` : 'Next draw');
 
+/** The same in the paper, which others read as well. */
+export const paperFundingWords: Readonly<Record<Funding, string>> = {
+  nothing_to_pay: 'nothing is to be paid',
+  homeowner: 'the homeowners, in cash',
+  homeowner_until_lender_agrees: 'the homeowners, in cash, unless the bank agrees to take it into the loan',
+  less_to_pay: 'less is to be paid',
+};
+
 export const reviewWords = {
   designer_review: "The designer's review",
   engineered_sheet: "The supplier's engineered sheet",

@@ -9,7 +9,7 @@ const inter = (file: string) => resolve(`@expo-google-fonts/inter/${file}`);
 const lora = (file: string) => resolve(`@expo-google-fonts/lora/${file}`);
 const FONTS = {
   Inter: { normal: inter('400Regular/Inter_400Regular.ttf'), bold: inter('600SemiBold/Inter_600SemiBold.ttf'), italics: inter('400Regular_Italic/Inter_400Regular_Italic.ttf'), bolditalics: inter('600SemiBold/Inter_600SemiBold.ttf') },
-  Lora: { normal: lora('400Regular/Lora_400Regular.ttf'), bold: lora('600SemiBold/Lora_600SemiBold.ttf'), italics: lora('400Regular/Lora_400Regular.ttf'), bolditalics: lora('600SemiBold/Lora_600SemiBold.ttf') },
+  Lora: { normal: lora('400Regular/Lora_400Regular.ttf'), bold: lora('600SemiBold/Lora_600SemiBold.ttf'), italics: lora('400Regular_Italic/Lora_400Regular_Italic.ttf'), bolditalics: lora('600SemiBold_Italic/Lora_600SemiBold_Italic.ttf') },
 };
 const fontFiles = new Set(Object.values(FONTS).flatMap((font) => Object.values(font)));
 

@@ -14,6 +14,6 @@ export function ruledTable(head: readonly string[], rows: readonly (readonly str
 
 /** Figures before and after an act. */
 export const beforeAfter = (rows: readonly { name: string; before: string; after: string }[]): Content => ({
-  table: { widths: ['*', 'auto', 'auto'], body: [['', 'before', 'after signing'].map((text, i): TableCell => ({ text, style: 'small', alignment: i === 0 ? 'left' : 'right' })), ...rows.map(({ name, before, after }): TableCell[] => [{ text: name }, { text: before, style: 'quiet', alignment: 'right' }, { text: after, style: 'sum', alignment: 'right' }])] },
+  table: { dontBreakRows: true, widths: ['*', 'auto', 'auto'], body: [['', 'before', 'after signing'].map((text, i): TableCell => ({ text, style: 'small', alignment: i === 0 ? 'left' : 'right' })), ...rows.map(({ name, before, after }): TableCell[] => [{ text: name }, { text: before, style: 'quiet', alignment: 'right' }, { text: after, style: 'sum', alignment: 'right' }])] },
   layout: { hLineWidth: (i) => (i === 0 ? 0 : 0.6), vLineWidth: () => 0, hLineColor: () => RULE, paddingLeft: () => 0, paddingRight: (i) => (i === 2 ? 0 : 18), paddingTop: () => 6, paddingBottom: () => 6 },
 });
