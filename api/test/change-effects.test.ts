@@ -10,7 +10,7 @@ import type { Draw } from '@tallypole/shared/schemas/draws';
 import type { Photo } from '@tallypole/shared/schemas/photos';
 import { principalWithFirm } from './support/builders.ts';
 import { changeAt, changeDraft, costLine, issueChange, signature, signChange, startChange, withPaper } from './support/change-builders.ts';
-import { approve, drawAt, lentJob, made, payDeposit, prove, sentDraw, type LentJob } from './support/draw-builders.ts';
+import { approve, drawAt, lentJob, loanInput, made, payDeposit, prove, sentDraw, type LentJob } from './support/draw-builders.ts';
 import { House, until } from './support/house.ts';
 
 describe('what a change does', () => {
@@ -83,6 +83,22 @@ describe('what a change does', () => {
     const [paper] = await house.sql<{ effect: string; hash: string }>(`select effect, effect_hash as hash from document where subject_id = $1 and kind = 'change'`, [first.id]);
     expect(paper?.hash).toBe(first.effectHash);
     await expect(house.sql(`insert into document select firm_id, job_id, $2, kind, subject_id, name, sha256, bytes, storage_key || 'x', created_at, effect || ' ', effect_hash from document where subject_id = $1 limit 1`, [first.id, v7()])).rejects.toMatchObject({ code: '23514' });
+  });
+
+  it('is asked for again when the loan changes who funds it', async () => {
+    lent = await lentJob(house, url, { firm, loan: null });
+    const seen = await issueChange(lent, await startChange(lent));
+    expect(seen.effect?.funding).toBe('homeowner');
+    made(await signChange(lent, lent.ann, seen));
+    made(await lent.principal.post(`/jobs/${lent.job.id}/loan`, loanInput()));
+    const anew = await withPaper(lent, seen.id);
+    expect([anew.state, anew.effect?.funding, anew.signers.map(({ signedAt }) => signedAt)]).toEqual(['issued', 'homeowner_until_lender_agrees', [null, null]]);
+    expect((await signChange(lent, lent.ben, seen, 'Ben Moss')).body).toMatchObject({ code: 'effect_changed' });
+    expect((await signBoth(anew)).state).toBe('approved');
+    // what nobody signs by is corrected without asking again
+    const other = await issueChange(lent, await startChange(lent));
+    made(await lent.principal.post(`/jobs/${lent.job.id}/loan`, loanInput({ lenderName: 'Fallbrook Savings' })));
+    expect((await withPaper(lent, other.id)).document?.sha256).toBe(other.document?.sha256);
   });
 
   it('that moved under somebody is refused, with what they saw and what it is now', async () => {

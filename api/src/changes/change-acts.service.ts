@@ -15,6 +15,7 @@ import { QueueRepository } from '../queue/queue.repository.ts';
 import { RecordRepository } from '../record/record.repository.ts';
 import { agreedIn, effectOf, type AgreedEffect, type ChangeFacts } from './change-facts.ts';
 import { ChangeMails } from './change-mails.ts';
+import { ChangeReissue } from './change-reissue.ts';
 import { ChangesRepository } from './changes.repository.ts';
 import { ChangesService } from './changes.service.ts';
 import { endOfDay } from './end-of-day.ts';
@@ -27,6 +28,7 @@ export class ChangeActsService {
     private readonly changes: ChangesService,
     private readonly repository: ChangesRepository,
     private readonly signing: SigningRepository,
+    private readonly reissue: ChangeReissue,
     private readonly files: FilesRepository,
     private readonly documents: DocumentsRepository,
     private readonly presence: Presence,
@@ -181,9 +183,7 @@ export class ChangeActsService {
     const numbered = lines.filter(({ cents }) => cents !== 0).map(({ description, cents }, i) => ({ id: v7(), number: `C${change.number}${change.revision}-${i + 1}`, description, cents }));
     await this.signing.addScheduleLines(tx, of, numbered, now);
     await this.signing.approve(tx, change.id, now);
-    for (const other of await this.signing.askAgain(tx, job.id, change.id, now)) {
-      await this.queue.enqueue(tx, 'render_change', { firmId: job.firmId, jobId: job.id, changeId: other }, { key: `render_change:${other}` });
-    }
+    await this.reissue.askAgain(tx, of, change.id);
     await this.queue.enqueue(tx, 'join_change', { firmId: job.firmId, jobId: job.id, changeId: change.id }, { key: `join_change:${change.id}` });
   }
 }

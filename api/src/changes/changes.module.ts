@@ -7,6 +7,7 @@ import { ChangeActsService } from './change-acts.service.ts';
 import { ChangeFactsRepository } from './change-facts.repository.ts';
 import { ChangeMails } from './change-mails.ts';
 import { ChangePapersRepository } from './change-papers.repository.ts';
+import { ChangeReissue } from './change-reissue.ts';
 import { ChangesController } from './changes.controller.ts';
 import { ChangesRepository } from './changes.repository.ts';
 import { ChangesService } from './changes.service.ts';
@@ -18,9 +19,13 @@ const stored = [ChangesRepository, ChangeFactsRepository, ChangePapersRepository
 @Module({ imports: [PapersModule], providers: stored, exports: stored })
 export class ChangePapersModule {}
 
+/** For whatever moves what signing does: a signature, other terms of the loan. */
+@Module({ providers: [SigningRepository, ChangeReissue], exports: [SigningRepository, ChangeReissue] })
+export class ChangeReissueModule {}
+
 @Module({
-  imports: [AuthModule, FilesModule, ChangePapersModule],
+  imports: [AuthModule, FilesModule, ChangePapersModule, ChangeReissueModule],
   controllers: [ChangesController, ChangeActsController],
-  providers: [ChangesService, ChangeActsService, SigningRepository],
+  providers: [ChangesService, ChangeActsService],
 })
 export class ChangesModule {}

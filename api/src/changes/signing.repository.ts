@@ -39,15 +39,15 @@ export class SigningRepository {
   }
 
   /** Other changes that are out for signature say "before" figures that have just moved: their papers are made anew and asked for again. */
-  async askAgain(tx: Tx, jobId: string, butChangeId: string, now: Date): Promise<string[]> {
+  async askAgain(tx: Tx, jobId: string, butChangeId: string | null, now: Date): Promise<string[]> {
     await tx.rows(
       `update change_signature set superseded_at = $3 where superseded_at is null and change_id in (
-         select id from change where job_id = $1 and id <> $2 and state in ('issued', 'partly_signed'))`,
+         select id from change where job_id = $1 and id is distinct from $2::uuid and state in ('issued', 'partly_signed'))`,
       [jobId, butChangeId, now],
     );
     const rows = await tx.rows<{ id: string }>(
       `update change set state = 'issued', effect_hash = null, document_id = null, version = version + 1
-       where job_id = $1 and id <> $2 and state in ('issued', 'partly_signed') returning id`,
+       where job_id = $1 and id is distinct from $2::uuid and state in ('issued', 'partly_signed') returning id`,
       [jobId, butChangeId],
     );
     return rows.map(({ id }) => id);

@@ -1,7 +1,8 @@
 import { Module } from '@nestjs/common';
+import { ChangeReissueModule } from '../changes/changes.module.ts';
 import { LoansController } from './loans.controller.ts';
 import { LoansRepository } from './loans.repository.ts';
 import { LoansService } from './loans.service.ts';
 
-@Module({ controllers: [LoansController], providers: [LoansService, LoansRepository] })
+@Module({ imports: [ChangeReissueModule], controllers: [LoansController], providers: [LoansService, LoansRepository] })
 export class LoansModule {}

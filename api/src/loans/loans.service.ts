@@ -1,5 +1,6 @@
 import { Injectable } from '@nestjs/common';
 import type { JobLoan, SetLoan } from '@tallypole/shared/schemas/loans';
+import { ChangeReissue } from '../changes/change-reissue.ts';
 import { requireOnJob } from '../common/access.ts';
 import { Clock } from '../common/clock.ts';
 import { CommandRunner, type Answered } from '../common/command-runner.ts';
@@ -15,6 +16,7 @@ export class LoansService {
     private readonly work: UnitOfWork,
     private readonly repository: LoansRepository,
     private readonly record: RecordRepository,
+    private readonly changes: ChangeReissue,
     private readonly clock: Clock,
   ) {}
 
@@ -33,7 +35,10 @@ export class LoansService {
         const firmId = await this.repository.lockJob(tx, jobId);
         if (!firmId) throw new Problem('not_found');
         if (await this.repository.isDrawnOn(tx, jobId)) throw new Problem('wrong_state', { detail: 'A draw was approved on these terms; they stay as they are.' });
+        const before = await this.repository.find(tx, jobId);
         await this.repository.set(tx, firmId, jobId, input, this.clock.now());
+        // who funds a change, and whether the lender is asked, is part of what is signed
+        if (before?.consentLimitCents !== input.consentLimitCents) await this.changes.askAgain(tx, { firmId, jobId }, null);
         await this.record.append(tx, { firmId, jobId, act: 'loan.set', by: actor.personId, data: { ...input } });
         return await this.find(tx, jobId);
       },
