@@ -1,11 +1,14 @@
 import type { Browser } from 'playwright-core';
+import { writeFileSync } from 'node:fs';
 import path from 'node:path';
 import { v7 } from 'uuid';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import type { Change } from '@tallypole/shared/schemas/changes';
 import { changeAt, changeDraft, issueChange, startChange } from '../../api/test/support/change-builders.ts';
+import { join } from '../../api/test/support/builders.ts';
 import { lentJob, made, type LentJob } from '../../api/test/support/draw-builders.ts';
 import { House } from '../../api/test/support/house.ts';
+import { pdf } from '../../api/test/support/uploads.ts';
 import { desk, openBrowser, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
 
@@ -65,6 +68,7 @@ describe('what people answer to a change', () => {
     await issueChange(lent, revision);
     await ann.press('Sign for +$951.37');
     await ann.sees('has taken its place: +$982.81 instead of +$951.37');
+    await ann.sees('Replaced by a revision');
     expect(await ann.page.getByRole('button', { name: /^Sign for/ }).count()).toBe(0);
     if (shots) await ann.shot(`${shots}/altered-360.png`);
     await ann.follow(/Revision A has taken its place/);
@@ -107,6 +111,36 @@ describe('what people answer to a change', () => {
     expect(await lou.axe()).toEqual([]);
     if (shots) await lou.shot(`${shots}/site-change-360.png`);
     expect(lou.troubles).toEqual([]);
+  });
+
+  it('the designer is asked, reads what is built without a price, and attaches the review', async () => {
+    const designer = await join(lent.principal, lent.job.id, 'designer', 'Ada Finch');
+    const change = await startChange(lent, { structural: true });
+    const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
+    await builder.signIn(pageOf(change));
+    await builder.press('Ask for a review');
+    await builder.sees('In review');
+    const mail = await house.mail.wait(designer.email, /touches the structure: please review it/);
+    const ada = await Someone.at(browser, house, url, designer.email, desk);
+    await ada.signIn(new URL(/https?:\/\/\S+changes\S+/.exec(mail.text ?? '')?.[0] ?? '').pathname);
+    await ada.sees('28 ea');
+    expect(await ada.text()).not.toContain('$');
+    const letter = path.join(house.env['FILES_DIR'] ?? '', '../letter.pdf');
+    writeFileSync(letter, pdf());
+    await ada.page.locator('input[type=file]').setInputFiles(letter);
+    await ada.sees('100 % sent');
+    await ada.fill('Who reviewed it', 'Ada Finch, AIA');
+    await ada.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
+    // the pointer rests nowhere, so that no band of the pole stands open
+    await ada.page.mouse.move(0, 0);
+    if (shots) await ada.shot(`${shots}/designer-1280.png`);
+    expect(await ada.axe()).toEqual([]);
+    await ada.press('Attach the review');
+    await ada.sees('letter.pdf');
+    await builder.page.reload();
+    await builder.press('Send out for +$951.37');
+    await builder.sees('Waits for a decision');
+    for (const someone of [builder, ada]) expect(someone.troubles).toEqual([]);
   });
 
   it('the firm sets how it prices, and the next change is priced by it', async () => {
