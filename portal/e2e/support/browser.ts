@@ -2,6 +2,8 @@ import { chromium, type Browser, type BrowserContext, type Page } from 'playwrig
 
 const FLAGS = ['--no-sandbox', '--disable-gpu', '--disable-quic', '--no-first-run', '--disable-background-networking', '--disable-component-update', '--disable-sync'];
 
+const TABLET = 768;
+
 export interface Screen {
   width: number;
   height: number;
@@ -15,7 +17,7 @@ export const openBrowser = (): Promise<Browser> => chromium.launch({ executableP
 
 /** A window of its own, with cookies of its own; what the page reports as an error is collected. */
 export async function openWindow(browser: Browser, { width, height, scheme }: Screen): Promise<{ context: BrowserContext; page: Page; troubles: string[] }> {
-  const context = await browser.newContext({ viewport: { width, height }, colorScheme: scheme, reducedMotion: 'reduce', timezoneId: 'America/New_York', locale: 'en-US' });
+  const context = await browser.newContext({ viewport: { width, height }, hasTouch: width < TABLET, colorScheme: scheme, reducedMotion: 'reduce', timezoneId: 'America/New_York', locale: 'en-US' });
   context.setDefaultTimeout(20_000);
   const page = await context.newPage();
   const troubles: string[] = [];

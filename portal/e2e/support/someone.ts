@@ -52,13 +52,22 @@ export class Someone {
   /** Everything that the page says, as one text. */
   text = async (): Promise<string> => (await this.page.locator('main').innerText()).replace(/\s+/g, ' ');
 
+  /** Waits until no color changes any more, three looks in a row. */
+  private async colorsFollow(): Promise<void> {
+    const colors = () => this.page.evaluate(() => [...document.querySelectorAll('body, h1, button, a, p, span')].map((part) => getComputedStyle(part).color + getComputedStyle(part).backgroundColor).join());
+    for (let same = 0, last = ''; same < 3; await this.page.waitForTimeout(50)) {
+      const now = await colors();
+      same = now === last ? same + 1 : 0;
+      last = now;
+    }
+  }
+
   /** What axe finds on this page, in both themes. */
   async axe(): Promise<string[]> {
     const found: string[] = [];
     for (const scheme of ['light', 'dark'] as const) {
       await this.page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
-      // colors follow within a frame or two
-      await this.page.waitForTimeout(150);
+      await this.colorsFollow();
       await this.page.evaluate(axe.source);
       const { violations } = await this.page.evaluate(() => (globalThis as unknown as { axe: typeof axe }).axe.run());
       found.push(...violations.flatMap(({ id, nodes }) => nodes.map(({ target, any }) => `${scheme} ${id} ${target.join(' ')} ${any[0]?.message ?? ''}`)));

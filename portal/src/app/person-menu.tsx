@@ -38,7 +38,7 @@ export function PersonMenu({ me }: { me: Me }) {
     await navigate('/sign-in');
   };
   return (
-    <Menu position="bottom-end" width={280} shadow="md">
+    <Menu position="bottom-end" width={280} shadow="md" withinPortal={false} withInitialFocusPlaceholder={false}>
       <Menu.Target>
         <Button variant="subtle" color="ink">
           {me.person.name ?? me.person.email}

@@ -70,25 +70,25 @@ function Rod({ input, bandHref }: PoleProps) {
         {picture.pointerTop === null ? null : <path d={`M${LEFT - 1} ${picture.pointerTop} l-9 -5 v10 z`} fill="var(--graphite)" />}
       </svg>
       {picture.bands.map((band, i) => (
-        <Link
-          key={band.id ?? `general-${i}`}
-          to={bandHref(band.id)}
-          className={`${classes['band'] ?? ''} ${band.provenHeight > 0 && band.provenHeight < band.height ? (classes['now'] ?? '') : ''}`}
-          style={{ top: band.top, height: Math.max(band.height, 2) }}
-          aria-label={`${band.name}: ${band.caption}`}
-          data-open={tapped === i || undefined}
-          onClick={(event) => onClick(event, i)}
-        >
-          {band.showsLabel ? (
-            <span className={classes['label']}>
-              {`${band.name} `}
-              <span>{band.caption}</span>
-            </span>
-          ) : null}
-          <span className={classes['card']} aria-hidden="true">
+        <div key={band.id ?? `general-${i}`} className={classes['place']} style={{ top: band.top, height: Math.max(band.height, 2) }}>
+          <Link
+            to={bandHref(band.id)}
+            className={`${classes['band'] ?? ''} ${band.provenHeight > 0 && band.provenHeight < band.height ? (classes['now'] ?? '') : ''}`}
+            aria-label={`${band.name}: ${band.caption}`}
+            data-open={tapped === i || undefined}
+            onClick={(event) => onClick(event, i)}
+          >
+            {band.showsLabel ? (
+              <span className={classes['label']}>
+                {`${band.name} `}
+                <span>{band.caption}</span>
+              </span>
+            ) : null}
+          </Link>
+          <div className={classes['card']} aria-hidden="true">
             <BandFacts band={band} row={rows[i]} prices={input.prices} />
-          </span>
-        </Link>
+          </div>
+        </div>
       ))}
     </div>
   );
