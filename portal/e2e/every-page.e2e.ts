@@ -157,7 +157,8 @@ describe('what every page rests on', () => {
     await Promise.all([ann.page.reload(), second.reload()]);
     await ann.sees('Ben Moss');
     await second.getByText('Foundation is proven').first().waitFor();
-    expect(refreshes).toEqual([204]);
+    // once for both, or once each where one tab had not heard yet of the other's; never once per request
+    expect([[204], [204, 204]]).toContainEqual(refreshes);
     expect(ann.troubles).toEqual([]);
   });
 
@@ -166,9 +167,8 @@ describe('what every page rests on', () => {
     await ben.signIn(`/jobs/${lent.job.id}`);
     await ben.press('Ben Moss');
     await look(ben, 'person-menu');
-    await ben.page.getByRole('menuitem', { name: 'Dark', exact: true }).click();
-    await ben.press('Ben Moss');
-    await ben.page.getByRole('menuitem', { name: 'Sign out' }).click();
+    await ben.page.getByRole('button', { name: 'Dark', exact: true }).click();
+    await ben.page.getByRole('button', { name: 'Sign out' }).click();
     await ben.page.waitForURL(/sign-in/);
     await ben.page.reload();
     await ben.page.locator('html[data-mantine-color-scheme="dark"]').waitFor();

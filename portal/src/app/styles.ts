@@ -34,6 +34,5 @@ import '@mantine/core/styles/Notification.css';
 import '@mantine/core/styles/Progress.css';
 import '@mantine/core/styles/Skeleton.css';
 import '@mantine/core/styles/Stack.css';
-import '@mantine/notifications/styles.css';
 import './tokens.css';
 import './base.css';

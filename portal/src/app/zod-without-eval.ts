@@ -1,4 +1,4 @@
-import { z } from 'zod';
+import { config } from 'zod/v4/core';
 
 // the content policy forbids eval; zod would try it and be reported. This must run before any schema is built.
-z.config({ jitless: true });
+config({ jitless: true });

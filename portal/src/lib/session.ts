@@ -6,7 +6,7 @@ const listeners = new Set<() => void>();
 /**
  * Renews the session for all tabs at once: they wait for each other, and whoever was refused before another one renewed uses its
  * cookies. `askedAt` is when the refused request was sent; `refresh` tells whether the server renewed. False when nobody is signed in
- * any more.
+ * any more. A tab in another process may hear late of the renewal and renew once more, which the server allows for a minute.
  */
 export async function renewSession(askedAt: number, refresh: () => Promise<boolean>): Promise<boolean> {
   const renew = async () => {

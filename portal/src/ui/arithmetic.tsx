@@ -22,7 +22,7 @@ function printFigure(figure: FigureValue): string {
 }
 
 /** The steps of a computation down to the given figures; deeper levels open one by one. */
-export function Arithmetic({ step }: { step: Step }) {
+export default function Arithmetic({ step }: { step: Step }) {
   return (
     <ul className={classes['steps']}>
       <StepItem step={step} open />
@@ -73,10 +73,15 @@ function StepItem({ step, open = false }: { step: Step; open?: boolean }) {
 function From({ origin, of }: { origin: Origin; of: string }) {
   const { jobId } = useParams();
   const path = originPath(origin, jobId);
-  const name = origin.label === of ? 'look it up' : origin.label;
+  // the label often names the record already
+  const named = of.startsWith(origin.label);
+  if (path === null) return named ? null : <span className={classes['from']}>{origin.label}</span>;
   return (
     <span className={classes['from']}>
-      {path === null ? origin.label : <Link to={path}>{name}</Link>}
+      <Link to={path}>
+        {named ? 'Look it up' : origin.label}
+        {named ? <span className="visually-hidden">: {origin.label}</span> : null}
+      </Link>
     </span>
   );
 }

@@ -61,7 +61,7 @@ describe('a figure', () => {
     narrow(true);
     render(<Due />);
     await userEvent.click(screen.getByRole('button'));
-    const sheet = await screen.findByRole('dialog', { name: 'Due now' });
+    const sheet = await screen.findByRole('dialog', { name: /^Due now/ });
     expect(sheet.className).toContain('Drawer');
     expect(within(sheet).getByRole('button', { name: 'Close' })).toBeInTheDocument();
   });

@@ -1,7 +1,8 @@
-import { ActionIcon, Checkbox, NativeSelect, Popover, Textarea, TextInput } from '@mantine/core';
+import { ActionIcon, Checkbox, NativeSelect, Textarea, TextInput } from '@mantine/core';
 import { formatMoney, formatRate, parseMoney, parseRate } from '@tallypole/shared/money';
 import { lazy, Suspense, useState, type ReactNode } from 'react';
 import { readDate, writtenDate } from '../../lib/dates.ts';
+import { Popup } from '../popup.tsx';
 import classes from './form.module.css';
 import type { FieldProps } from './use-act-form.ts';
 
@@ -128,28 +129,24 @@ const Calendar = lazy(() => import('./calendar.tsx'));
 /** For a near day it is quicker to choose than to type. */
 function CalendarButton({ label, value, near, onChange }: { label: string; value: string | null; near: string; onChange: (date: string) => void }) {
   const [opened, setOpened] = useState(false);
+  const button = (
+    <ActionIcon variant="subtle" size={40} aria-label={`Choose from a calendar: ${label}`} aria-haspopup="dialog" aria-expanded={opened} onClick={() => setOpened(!opened)}>
+      <svg width="18" height="18" viewBox="0 0 18 18" fill="none" stroke="currentColor" strokeWidth="1.5" aria-hidden="true">
+        <path d="M2.5 4.5h13v11h-13zM2.5 7.5h13M6 2v4M12 2v4" />
+      </svg>
+    </ActionIcon>
+  );
+  const close = () => setOpened(false);
+  const choose = (date: string) => {
+    onChange(date);
+    close();
+  };
   return (
-    <Popover opened={opened} onChange={setOpened} position="bottom-end" shadow="md" trapFocus returnFocus>
-      <Popover.Target popupType="dialog">
-        <ActionIcon variant="subtle" size={36} aria-label={`Choose from a calendar: ${label}`} onClick={() => setOpened(!opened)}>
-          <svg width="18" height="18" viewBox="0 0 18 18" fill="none" stroke="currentColor" strokeWidth="1.5" aria-hidden="true">
-            <path d="M2.5 4.5h13v11h-13zM2.5 7.5h13M6 2v4M12 2v4" />
-          </svg>
-        </ActionIcon>
-      </Popover.Target>
-      <Popover.Dropdown aria-label={label}>
-        <Suspense fallback="…">
-          <Calendar
-            value={value}
-            near={near}
-            onChange={(date) => {
-              onChange(date);
-              setOpened(false);
-            }}
-          />
-        </Suspense>
-      </Popover.Dropdown>
-    </Popover>
+    <Popup label={label} button={button} opened={opened} onClose={close}>
+      <Suspense fallback="…">
+        <Calendar value={value} near={near} onChange={choose} />
+      </Suspense>
+    </Popup>
   );
 }
 

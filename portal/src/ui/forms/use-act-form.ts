@@ -9,7 +9,8 @@ export interface ActFormOptions<Values extends object, Answer> {
   /** Names form and record: what was typed and the idempotency key are kept under it. */
   name: string;
   initialValues: Values;
-  schema: z.ZodType;
+  /** Without one, the server's word at each field is waited for: a first page loads no schemas. */
+  schema?: z.ZodType;
   /** Sends it; the same key for every try of this form. */
   send: (values: Values, idempotencyKey: string) => Promise<Answer>;
   onDone: (answer: Answer) => void;
@@ -47,7 +48,7 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
   const busy = useRef(false);
   const form = useForm<Values>({
     initialValues: { ...initialValues, ...(keep ? readDraft<Values>(name) : null) },
-    validate: schemaResolver(schema as never, { sync: true }),
+    ...(schema ? { validate: schemaResolver(schema as never, { sync: true }) } : {}),
     validateInputOnChange: failures > 0,
   });
   const { values } = form;

@@ -1,9 +1,10 @@
 import type { Photo } from '@tallypole/shared/schemas/photos';
-import { useState } from 'react';
+import { lazy, Suspense, useState } from 'react';
 import { writtenInstant } from '../../lib/dates.ts';
 import { photoUrl } from '../../lib/milestones.ts';
-import { PhotoViewer } from './photo-viewer.tsx';
 import classes from './photo-grid.module.css';
+
+const PhotoViewer = lazy(() => import('./photo-viewer.tsx'));
 
 export interface PhotoGridProps {
   jobId: string;
@@ -33,15 +34,17 @@ export function PhotoGrid({ jobId, photos, subject, timeZone }: PhotoGridProps) 
         ))}
       </ul>
       {shown ? (
-        <PhotoViewer
-          jobId={jobId}
-          photo={shown}
-          alt={altOf(shown, subject, timeZone)}
-          title={`${subject}, photo ${(open ?? 0) + 1} of ${photos.length}`}
-          timeZone={timeZone}
-          onClose={() => setOpen(null)}
-          onMove={(step) => setOpen((at) => Math.min(photos.length - 1, Math.max(0, (at ?? 0) + step)))}
-        />
+        <Suspense fallback={null}>
+          <PhotoViewer
+            jobId={jobId}
+            photo={shown}
+            alt={altOf(shown, subject, timeZone)}
+            title={`${subject}, photo ${(open ?? 0) + 1} of ${photos.length}`}
+            timeZone={timeZone}
+            onClose={() => setOpen(null)}
+            onMove={(step) => setOpen((at) => Math.min(photos.length - 1, Math.max(0, (at ?? 0) + step)))}
+          />
+        </Suspense>
       ) : null}
     </>
   );

@@ -16,7 +16,7 @@ interface PhotoViewerProps {
 }
 
 /** One photo large, with when, where and by whom, and what was found out about it. */
-export function PhotoViewer({ jobId, photo, alt, title, timeZone, onClose, onMove }: PhotoViewerProps) {
+export default function PhotoViewer({ jobId, photo, alt, title, timeZone, onClose, onMove }: PhotoViewerProps) {
   const onKeyDown = (event: KeyboardEvent) => {
     if (event.key === 'ArrowRight') onMove(1);
     if (event.key === 'ArrowLeft') onMove(-1);

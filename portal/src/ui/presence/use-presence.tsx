@@ -1,10 +1,7 @@
-import { Modal } from '@mantine/core';
-import { ProvePresence } from '@tallypole/shared/schemas/auth';
 import type { CodeSent } from '@tallypole/shared/schemas/auth';
-import { useRef, useState, type ReactNode } from 'react';
+import { lazy, Suspense, useRef, useState, type ReactNode } from 'react';
 import { post } from '../../lib/http.ts';
 import { isProblemWith, Problem } from '../../lib/problem.ts';
-import { Form, TextField, useActForm } from '../forms/index.ts';
 
 export interface Presence {
   /** Performs an act; where the server asks who is there, a mailed code is asked for and the act is sent again. */
@@ -17,6 +14,8 @@ interface Asked {
   sentTo: string;
   settle: (present: boolean) => void;
 }
+
+const PresenceDialog = lazy(() => import('./presence-dialog.tsx'));
 
 /** Proof of presence around signing, approving and paying: a code at the person's own address, asked for only when it is needed. */
 export function usePresence(): Presence {
@@ -41,26 +40,9 @@ export function usePresence(): Presence {
     }
   };
   const dialog = asked ? (
-    <Modal opened onClose={() => asked.settle(false)} title="Confirm that it is you" closeButtonProps={{ 'aria-label': 'Close' }} centered>
-      <CodeForm sentTo={asked.sentTo} onDone={() => asked.settle(true)} />
-    </Modal>
+    <Suspense fallback={null}>
+      <PresenceDialog sentTo={asked.sentTo} onSettled={asked.settle} />
+    </Suspense>
   ) : null;
   return { guard, dialog };
-}
-
-function CodeForm({ sentTo, onDone }: { sentTo: string; onDone: () => void }) {
-  const act = useActForm({
-    name: 'presence',
-    initialValues: { code: '' },
-    schema: ProvePresence,
-    keep: false,
-    send: ({ code }) => post<undefined>('auth/presence', { code: code.replace(/\s/g, '') }),
-    onDone,
-  });
-  return (
-    <Form act={act} submitLabel="Confirm and go on">
-      <p>We mailed a code to {sentTo}. It is good for 10 minutes.</p>
-      <TextField field={act.field('code')} label="Code from the mail" inputMode="numeric" autoComplete="one-time-code" spellCheck={false} autoFocus />
-    </Form>
-  );
 }

@@ -1,6 +1,6 @@
 import { Button } from '@mantine/core';
 import { useQuery } from '@tanstack/react-query';
-import { SignIn, AskForCode, type Me } from '@tallypole/shared/schemas/auth';
+import type { Me } from '@tallypole/shared/schemas/auth';
 import { useState } from 'react';
 import { useLocation, useNavigate, useSearchParams } from 'react-router-dom';
 import { enter } from '../../../lib/me.ts';
@@ -55,7 +55,6 @@ function EmailForm({ onSent }: { onSent: (email: string) => void }) {
   const act = useActForm({
     name: 'sign-in',
     initialValues: { email: '' },
-    schema: AskForCode,
     keep: false,
     send: ({ email }) => askForCode(email.trim().toLowerCase()),
     onDone: ({ sentTo }) => onSent(sentTo),
@@ -71,7 +70,6 @@ function CodeForm({ email, onDone, onBack }: { email: string; onDone: (me: Me) =
   const act = useActForm({
     name: 'sign-in-code',
     initialValues: { email, code: '' },
-    schema: SignIn,
     keep: false,
     send: ({ code }) => signIn(email, code.replace(/\s/g, '')),
     onDone,

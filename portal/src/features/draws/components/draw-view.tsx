@@ -2,7 +2,8 @@ import { may } from '@tallypole/shared/schemas/permissions';
 import { mayDraw } from '@tallypole/shared/schemas/draw-states';
 import type { Draw } from '@tallypole/shared/schemas/draws';
 import type { Job } from '@tallypole/shared/schemas/jobs';
-import { Section } from '../../../ui/page.tsx';
+import { lazy, Suspense } from 'react';
+import { LoadingState, Section } from '../../../ui/page.tsx';
 import { strings } from '../strings.ts';
 import { AskedLines } from './asked-lines.tsx';
 import { ApproveDraw } from './approve-draw.tsx';
@@ -10,11 +11,13 @@ import { BuiltPhotos } from './built-photos.tsx';
 import { DrawHead } from './draw-head.tsx';
 import { DrawPayments } from './draw-payments.tsx';
 import { DrawSummary } from './draw-summary.tsx';
-import { LenderReview } from './lender-review.tsx';
-import { VoidForm } from './office-acts.tsx';
 import { PayPart } from './pay-part.tsx';
 import { ReturnForm } from './return-form.tsx';
 import classes from './draws.module.css';
+
+// what only the lender or the firm does
+const LenderReview = lazy(() => import('./lender-review.tsx').then((module) => ({ default: module.LenderReview })));
+const VoidForm = lazy(() => import('./office-acts.tsx').then((module) => ({ default: module.VoidForm })));
 
 /** A draw that was sent: what was built, what is asked, what stays held, what is due from whom, and what the reader can do. */
 export function DrawView({ job, draw }: { job: Job; draw: Draw }) {
@@ -31,7 +34,11 @@ export function DrawView({ job, draw }: { job: Job; draw: Draw }) {
           <Section title={strings.photos.built} ruled={false}>
             <BuiltPhotos job={job} draw={draw} />
           </Section>
-          {lender ? <LenderReview job={job} draw={draw} /> : null}
+          {lender ? (
+            <Suspense fallback={<LoadingState />}>
+              <LenderReview job={job} draw={draw} />
+            </Suspense>
+          ) : null}
           <Section title={strings.asked}>
             <AskedLines job={job} draw={draw} objects={decides} />
           </Section>
@@ -47,7 +54,11 @@ export function DrawView({ job, draw }: { job: Job; draw: Draw }) {
         </Section>
       ) : null}
       <DrawPayments draw={draw} />
-      {may(job.roles, 'draw.prepare') && mayDraw(draw.state, 'void') ? <VoidForm jobId={job.id} draw={draw} /> : null}
+      {may(job.roles, 'draw.prepare') && mayDraw(draw.state, 'void') ? (
+        <Suspense fallback={null}>
+          <VoidForm jobId={job.id} draw={draw} />
+        </Suspense>
+      ) : null}
     </>
   );
 }

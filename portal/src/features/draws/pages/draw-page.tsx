@@ -1,12 +1,15 @@
 import { useQuery } from '@tanstack/react-query';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { mayDraw } from '@tallypole/shared/schemas/draw-states';
+import { lazy } from 'react';
 import { useParams } from 'react-router-dom';
 import { drawQuery } from '../../../lib/draws.ts';
 import { useJob } from '../../../lib/job.ts';
 import { FailureState, LoadingState } from '../../../ui/page.tsx';
-import { DrawEditor } from '../components/draw-editor.tsx';
 import { DrawView } from '../components/draw-view.tsx';
+
+// the sheet is the firm's; a homeowner's page doesn't wait for it
+const DrawEditor = lazy(() => import('../components/draw-editor.tsx').then((module) => ({ default: module.DrawEditor })));
 
 /** One draw: a sheet to write in for the firm while it is being written, else what is asked and decided. */
 export function Component() {
