@@ -95,8 +95,8 @@ describe('what every page rests on', () => {
     await ben.signIn(`/jobs/${lent.job.id}`);
     await ben.page.getByRole('link', { name: /^Foundation: / }).tap();
     await ben.page.locator('dl').getByText('$100,000.00').first().waitFor();
-    expect(new URL(ben.page.url()).pathname).toBe(`/jobs/${lent.job.id}`);
     await look(ben, 'strip-open');
+    expect(new URL(ben.page.url()).pathname).toBe(`/jobs/${lent.job.id}`);
     await ben.page.getByRole('button', { name: 'Above: Framing' }).tap();
     await ben.page.locator('dl').getByText('$150,000.00').first().waitFor();
     await ben.page.getByRole('link', { name: /^Framing: / }).tap();
@@ -170,6 +170,7 @@ describe('what every page rests on', () => {
     await ben.page.getByRole('button', { name: 'Dark', exact: true }).click();
     await ben.page.getByRole('button', { name: 'Sign out' }).click();
     await ben.page.waitForURL(/sign-in/);
+    await ben.page.emulateMedia({ colorScheme: 'light', reducedMotion: 'reduce' });
     await ben.page.reload();
     await ben.page.locator('html[data-mantine-color-scheme="dark"]').waitFor();
     await ben.goto(`/jobs/${lent.job.id}`);

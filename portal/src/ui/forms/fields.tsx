@@ -1,6 +1,6 @@
 import { ActionIcon, Checkbox, NativeSelect, Textarea, TextInput } from '@mantine/core';
 import { formatMoney, formatRate, parseMoney, parseRate } from '@tallypole/shared/money';
-import { lazy, Suspense, useState, type ReactNode } from 'react';
+import { lazy, Suspense, useRef, useState, type ReactNode } from 'react';
 import { readDate, writtenDate } from '../../lib/dates.ts';
 import { Popup } from '../popup.tsx';
 import classes from './form.module.css';
@@ -49,7 +49,7 @@ interface TypedProps extends Common {
 /** Takes what people type, keeps it, and says below how it was read. The form holds the value, or the text where it can't be read. */
 function TypedField({ field, label, hint, read, write, shown, inputMode, section, autoFocus, picker }: TypedProps) {
   const given = field.value as unknown as number | string | null;
-  const [typed, setTyped] = useState(() => (typeof given === 'number' ? write(given) : (given ?? '')));
+  const [typed, setTyped] = useState(() => (typeof given === 'number' || (given !== null && read(given) === given) ? write(given) : (given ?? '')));
   const understood = typed.trim() === '' ? null : read(typed);
   const enter = (text: string) => {
     setTyped(text);
@@ -118,9 +118,9 @@ export const DateField = ({ near, ...props }: Common & { near: string }) => (
     {...props}
     inputMode="text"
     read={(typed) => readDate(typed, near)}
-    write={String}
+    write={(value) => writtenDate(String(value))}
     shown={(value) => writtenDate(String(value), true)}
-    picker={(value, choose) => <CalendarButton label={props.label} value={value} near={near} onChange={choose} />}
+    picker={(value, choose) => <CalendarButton label={props.label} value={value} near={near} onChange={(date) => choose(writtenDate(date))} />}
   />
 );
 
@@ -129,20 +129,21 @@ const Calendar = lazy(() => import('./calendar.tsx'));
 /** For a near day it is quicker to choose than to type. */
 function CalendarButton({ label, value, near, onChange }: { label: string; value: string | null; near: string; onChange: (date: string) => void }) {
   const [opened, setOpened] = useState(false);
+  const opener = useRef<HTMLButtonElement>(null);
   const button = (
-    <ActionIcon variant="subtle" size={40} aria-label={`Choose from a calendar: ${label}`} aria-haspopup="dialog" aria-expanded={opened} onClick={() => setOpened(!opened)}>
+    <ActionIcon ref={opener} variant="subtle" size={40} aria-label={`Choose from a calendar: ${label}`} aria-haspopup="dialog" aria-expanded={opened} onClick={() => setOpened(!opened)}>
       <svg width="18" height="18" viewBox="0 0 18 18" fill="none" stroke="currentColor" strokeWidth="1.5" aria-hidden="true">
         <path d="M2.5 4.5h13v11h-13zM2.5 7.5h13M6 2v4M12 2v4" />
       </svg>
     </ActionIcon>
   );
-  const close = () => setOpened(false);
   const choose = (date: string) => {
     onChange(date);
-    close();
+    setOpened(false);
+    opener.current?.focus();
   };
   return (
-    <Popup label={label} button={button} opened={opened} onClose={close}>
+    <Popup label={label} button={button} opened={opened} onClose={() => setOpened(false)}>
       <Suspense fallback="…">
         <Calendar value={value} near={near} onChange={choose} />
       </Suspense>

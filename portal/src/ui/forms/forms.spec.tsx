@@ -74,6 +74,17 @@ describe('fields', () => {
     await waitFor(() => expect(send.mock.calls[0]?.[0].place.signedOn).toBe(date));
   });
 
+  it('take a day from a calendar, which gives focus back', async () => {
+    open(() => Promise.resolve('kept'));
+    const button = screen.getByRole('button', { name: 'Choose from a calendar: Signed on' });
+    await userEvent.click(button);
+    await userEvent.click(await screen.findByRole('button', { name: /^14 February 2027/ }));
+    expect(field('Signed on')).toHaveValue('February 14, 2027');
+    expect(screen.getByText('Sunday, February 14, 2027')).toBeInTheDocument();
+    expect(screen.queryByRole('dialog')).not.toBeInTheDocument();
+    expect(button).toHaveFocus();
+  });
+
   it('keep what cannot be read and say what would be', async () => {
     const send = vi.fn<Send>(() => Promise.resolve('kept'));
     open(send);
@@ -129,7 +140,7 @@ describe('a form', () => {
     expect(send.mock.calls[1]?.[1]).toBe(send.mock.calls[0]?.[1]);
     answer('kept');
     await waitFor(() => expect(onDone).toHaveBeenCalledWith('kept'));
-    expect(document.title).toBe('A contract · Tallypole');
+    await waitFor(() => expect(document.title).toBe('A contract · Tallypole'));
   });
 
   it('finds what was typed after a reload, and forgets it once it was sent', async () => {
@@ -139,6 +150,7 @@ describe('a form', () => {
     const again = open(() => Promise.resolve('kept'));
     expect(field('Name')).toHaveValue('Heron Way');
     expect(field('Contract sum')).toHaveValue('486,500.00');
+    expect(field('Signed on')).toHaveValue('March 14, 2027');
     await keep();
     await waitFor(() => expect(sessionStorage.getItem('tally-draft:contract')).toBeNull());
     again.unmount();
