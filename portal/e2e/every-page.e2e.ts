@@ -110,6 +110,11 @@ describe('what every page rests on', () => {
     await builder.signIn(form);
     await builder.fill('Name of the job', '5 Sorrel Bend');
     await builder.fill('Contract sum as signed', '310,000');
+    await builder.press('Choose from a calendar: Signed on');
+    await builder.page.getByRole('dialog', { name: 'Signed on' }).getByRole('button', { name: /^15 / }).waitFor();
+    await look(builder, 'calendar');
+    await builder.page.keyboard.press('Escape');
+    await builder.page.getByRole('dialog').waitFor({ state: 'detached' });
     await house.sql('update session set ended_at = now() where person_id = (select id from person where email = $1)', [lent.principal.email]);
     for (const [label, text] of [['Street', '5 Sorrel Bend'], ['City', 'Maple Glen'], ['State', 'OH'], ['ZIP code', '45011'], ['Signed on', 'March 1, 2027'], ['Work starts', '3/15/27'], ['Complete by', '2027-12-17']] as const) {
       await builder.page.getByLabel(label, { exact: true }).fill(text);
