@@ -4,7 +4,7 @@ import { mkdirSync, rmSync } from 'node:fs';
 import path from 'node:path';
 import { build } from './lib/build.mjs';
 import { finish, killGroup, root, runNode, startNode } from './lib/children.mjs';
-import { requireChromium } from './lib/debian.mjs';
+import { requireChromium, requirePdftotext } from './lib/debian.mjs';
 import { explain, Failure } from './lib/failure.mjs';
 import { requireNode, requirePackages } from './lib/packages.mjs';
 import { readReport } from './lib/reports.mjs';
@@ -32,6 +32,7 @@ const setUps = {
   chromium: async () => {
     found['CHROMIUM'] = requireChromium(say);
   },
+  pdftotext: async () => requirePdftotext(say),
   postgres: async () => {
     const pg = await testPostgres();
     atEnd.push(pg.stop);

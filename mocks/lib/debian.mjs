@@ -48,7 +48,7 @@ export function requirePostgres(wanted, say = () => {}) {
 }
 
 /**
- * Debian's Chromium and poppler-utils (pdftotext), which the browser tests need.
+ * Debian's Chromium, which the browser tests need.
  * @param {(line: string) => void} say
  * @returns {string} path of the browser
  */
@@ -56,14 +56,32 @@ export function requireChromium(say) {
   const wanted = process.env['CHROMIUM'];
   if (wanted && !existsSync(wanted)) throw new Failure(`CHROMIUM is ${wanted}, but there is no such file.`);
   const browser = wanted ?? ['/usr/bin/chromium', '/usr/bin/google-chrome'].find((file) => existsSync(file));
-  const missing = [...(browser ? [] : ['chromium']), ...(existsSync('/usr/bin/pdftotext') ? [] : ['poppler-utils'])];
-  if (missing.length === 0 && browser) return browser;
-  const hint = `The browser tests need ${missing.join(' and ')}: install once as root (apt-get install ${missing.join(' ')})`;
-  if (!isRoot || !existsSync('/usr/bin/apt-get')) throw new Failure(`${hint}${browser ? '' : ', or set CHROMIUM to a browser'}.`);
-  installPackages(missing, say);
-  const found = browser ?? '/usr/bin/chromium';
-  if (!existsSync(found)) throw new Failure(`${hint}.`);
-  return found;
+  if (browser) return browser;
+  requireProgram('/usr/bin/chromium', 'chromium', 'The browser tests', say, ', or set CHROMIUM to a browser');
+  return '/usr/bin/chromium';
+}
+
+/**
+ * Debian's pdftotext, by which tests read papers as a person would.
+ * @param {(line: string) => void} say
+ */
+export function requirePdftotext(say) {
+  requireProgram('/usr/bin/pdftotext', 'poppler-utils', 'The tests that read papers', say);
+}
+
+/**
+ * @param {string} file the program
+ * @param {string} name Debian's package
+ * @param {string} who needs it
+ * @param {(line: string) => void} say
+ * @param {string} [otherwise]
+ */
+function requireProgram(file, name, who, say, otherwise = '') {
+  if (existsSync(file)) return;
+  const hint = `${who} need ${name}: install it once as root (apt-get install ${name})${otherwise}.`;
+  if (!isRoot || !existsSync('/usr/bin/apt-get')) throw new Failure(hint);
+  installPackages([name], say);
+  if (!existsSync(file)) throw new Failure(hint);
 }
 
 /**

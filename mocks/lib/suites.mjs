@@ -5,7 +5,7 @@ import { root } from './children.mjs';
 
 const module = (/** @type {string} */ name) => path.join(root, 'node_modules', name);
 
-/** What a suite needs before it can run; test.mjs sets these up once each. @typedef {'api' | 'portal' | 'postgres' | 'chromium'} Need */
+/** What a suite needs before it can run; test.mjs sets these up once each. @typedef {'api' | 'portal' | 'postgres' | 'chromium' | 'pdftotext'} Need */
 
 /**
  * Static checks, each counting as one test.
@@ -38,7 +38,7 @@ export function suites() {
     { name: 'shared', runner: 'vitest', workspace: 'shared', budget: 60, needs: [] },
     { name: 'portal', runner: 'vitest', workspace: 'portal', budget: 60, needs: [] },
     { name: 'mocks', runner: 'jest', workspace: 'mocks', budget: 120, needs: ['api', 'portal'] },
-    { name: 'api', runner: 'jest', workspace: 'api', budget: 300, needs: ['api', 'postgres'] },
+    { name: 'api', runner: 'jest', workspace: 'api', budget: 300, needs: ['api', 'postgres', 'pdftotext'] },
     { name: 'faults', runner: 'jest', workspace: 'api', config: 'jest.faults.config.mjs', budget: 240, needs: ['api', 'postgres'] },
     { name: 'browser', runner: 'vitest', workspace: 'portal', config: 'vitest.e2e.config.ts', budget: 360, needs: ['api', 'portal', 'postgres', 'chromium'] },
   ];
