@@ -41,6 +41,7 @@ export interface FieldProps {
 /** A form that performs one act: checked on sending, once an error is shown on each change; what was typed survives; sent once. */
 export function useActForm<Values extends object, Answer>(options: ActFormOptions<Values, Answer>): ActForm<Values> {
   const { name, initialValues, schema, send, onDone, keep = true } = options;
+  if (schema) mustKnow(schema, initialValues);
   const idempotency = useIdempotencyKey(name);
   const [submitting, setSubmitting] = useState(false);
   const [failure, setFailure] = useState<Problem | null>(null);
@@ -97,6 +98,13 @@ export function useActForm<Values extends object, Answer>(options: ActFormOption
     onSubmit: (event) => form.onSubmit((typed) => void perform(typed), () => failed(null))(event),
     field: (path) => ({ ...(form.getInputProps(path) as Omit<FieldProps, 'id'>), id: fieldId(name, path) }),
   };
+}
+
+/** A field that a strict schema doesn't know could never be sent, and nobody could say why at any field. */
+function mustKnow(schema: z.ZodType, values: object): void {
+  const shape = (schema as { shape?: object }).shape;
+  const unknown = shape && Object.keys(values).find((key) => !(key in shape));
+  if (unknown) throw new Error(`The schema of this form does not know its field "${unknown}".`);
 }
 
 const pathOf = (pointer: string): string => pointer.replace(/^\//, '').replaceAll('/', '.');

@@ -37,6 +37,8 @@ interface Values {
 
 const blank = (targets: readonly Target[], today: string): Values => ({ target: targets[0]?.value ?? '', method: 'check', amountCents: '', receivedOn: today, reference: '' });
 
+const Typed = RecordPayment.pick({ method: true, amountCents: true, receivedOn: true, reference: true }).extend({ target: RecordPayment.shape.reference });
+
 /** A check or a wire that is in hand. */
 export function RecordForm({ job, money }: { job: Job; money: JobMoney }) {
   const targets = targetsOf(money);
@@ -45,7 +47,7 @@ export function RecordForm({ job, money }: { job: Job; money: JobMoney }) {
   const act = useActForm({
     name: `payment-record-${job.id}`,
     initialValues: blank(targets, job.today),
-    schema: RecordPayment.pick({ method: true, amountCents: true, receivedOn: true, reference: true }),
+    schema: Typed,
     send: ({ target, method, amountCents, receivedOn, reference }, key) => {
       const chosen = targets.find(({ value }) => value === target) ?? targets[0];
       return recordPayment(job.id, { id, drawId: chosen?.drawId ?? null, source: chosen?.source ?? 'homeowner', method, amountCents: Number(amountCents), receivedOn, reference }, key);
