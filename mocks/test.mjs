@@ -70,7 +70,7 @@ function chosen(named) {
   const all = ['checks', ...suites().map(({ name }) => name)];
   const unknown = named.find((name) => !all.includes(name));
   if (unknown) throw new Failure(`There is no suite "${unknown}"; there are ${all.join(', ')}.`);
-  return named.length > 0 ? named : all;
+  return named.length > 0 ? named : all.filter((name) => !suites().some((suite) => suite.name === name && suite.apart));
 }
 
 /** @param {import('node:child_process').ChildProcess} child */

@@ -29,6 +29,7 @@ export function checks() {
  * @property {string} [config] of the runner, when it is not the usual one
  * @property {number} budget seconds; three times as many end it
  * @property {Need[]} needs
+ * @property {boolean} [apart] runs only when it is named
  */
 
 /** @returns {Suite[]} in the order they run */
@@ -41,6 +42,7 @@ export function suites() {
     { name: 'api', runner: 'jest', workspace: 'api', budget: 300, needs: ['api', 'postgres', 'pdftotext'] },
     { name: 'faults', runner: 'jest', workspace: 'api', config: 'jest.faults.config.mjs', budget: 240, needs: ['api', 'postgres'] },
     { name: 'browser', runner: 'vitest', workspace: 'portal', config: 'vitest.e2e.config.ts', budget: 360, needs: ['api', 'portal', 'postgres', 'chromium'] },
+    { name: 'bench', runner: 'jest', workspace: 'api', config: 'jest.bench.config.mjs', budget: 600, needs: ['api', 'postgres'], apart: true },
   ];
   return all.filter(({ name, workspace, config }) => name !== 'faults' || existsSync(path.join(root, workspace, config ?? '')));
 }

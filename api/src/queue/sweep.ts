@@ -41,7 +41,7 @@ export class DeadWorkerSweep {
   }
 
   private async sweep(): Promise<void> {
-    // this session could take its own lock again, which would free the jobs that run here at this moment
+    // a connection can take its own lock again, which would free the jobs that run here at this moment
     await this.client.query(
       `select graphile_worker.force_unlock_workers(array_agg(w)) from (
         select distinct locked_by as w from graphile_worker.jobs where locked_at < now() - interval '2 seconds' and locked_by <> $1) x
