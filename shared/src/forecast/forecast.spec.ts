@@ -89,12 +89,12 @@ describe('cash ahead', () => {
   });
 
   it('shows issued changes on top and in no other figure', () => {
-    const issued = [{ id: 'c1', label: 'Change 1', cents: 250_000, expectedOn: '2027-04-20' }, { id: 'c2', label: 'Change 2', cents: -40_000, expectedOn: '2027-08-10', exempt: true }];
+    const issued = [{ id: 'c1', label: 'Change 1', cents: 250_000, expectedOn: '2027-04-20' }, { id: 'c2', label: 'Change 2', cents: -40_000, expectedOn: '2027-08-10' }, { id: 'c3', label: 'Change 3', cents: 10_000, expectedOn: '2027-05-20', exempt: true }];
     const ahead = cashAhead({ ...base, issued });
-    expect(column(ahead, 'issuedCents')).toEqual({ '2027-05': 225_000, '2027-07': 25_000, '2027-08': -40_000 });
+    expect(column(ahead, 'issuedCents')).toEqual({ '2027-05': 225_000, '2027-06': 10_000, '2027-07': 25_000, '2027-08': -40_000 });
     expect(ahead.months.map(({ totalCents }) => totalCents).slice(0, 5)).toEqual(cashAhead(base).months.map(({ totalCents }) => totalCents));
-    expect(ahead.months.at(-1)).toMatchObject({ month: '2027-08', totalCents: 0, runningCents: 8_200_000, runningWithIssuedCents: 8_410_000 });
-    expect(ahead.issuedCents).toBe(210_000);
+    expect(ahead.months.at(-1)).toMatchObject({ month: '2027-08', totalCents: 0, runningCents: 8_200_000, runningWithIssuedCents: 8_420_000 });
+    expect(ahead.issuedCents).toBe(220_000);
   });
 
   it('is empty when everything is paid', () => {
@@ -137,7 +137,7 @@ describe('the arithmetic of cash ahead', () => {
   it('opens a month down to lines, dates, retainage and who pays', () => {
     const ahead = cashAhead({ ...base, loan, unpaid: [{ id: 'd3', label: 'Draw 3', dueOn: '2027-04-02', homeownerCents: 0, loanCents: 70_000 }], issued: [{ id: 'c1', label: 'Change 1', cents: 5_000, expectedOn: '2027-03-26' }] });
     const april = ahead.steps.inputs.find(({ label }) => label === 'Falls due in April 2027')!;
-    expect(flat(april)).toEqual(expect.arrayContaining(['frame', 'Milestone frame finishes', 'Review', 'Due', 'Retainage kept back', 'Draw 3', 'The homeowner', 'The loan', 'On top, if signed', 'Change 1']));
+    expect(flat(april)).toEqual(expect.arrayContaining(['frame', 'Milestone frame finishes', 'Review', 'Due', 'Retainage kept back', 'Retainage held', 'Draw 3', 'The homeowner', 'The loan', 'On top, if signed', 'Change 1']));
     expect(april.result).toEqual({ kind: 'money', cents: 2_770_000 });
   });
 });

@@ -10,7 +10,7 @@ export const monthOf = (date: BusinessDate): Month => date.slice(0, 7);
 
 const firstDay = (month: Month): BusinessDate => `${month}-01`;
 
-export const nextMonth = (month: Month): Month => monthOf(addCalendarDays(firstDay(month), 31));
+const nextMonth = (month: Month): Month => monthOf(addCalendarDays(firstDay(month), 31));
 
 export const lastDay = (month: Month): BusinessDate => addCalendarDays(firstDay(nextMonth(month)), -1);
 
