@@ -1,5 +1,7 @@
 export { addDays, closedDays, isBusinessDay, nextBusinessDay } from './calendars.ts';
 export type { CalendarName, DayKind } from './calendars.ts';
+export { compoundedLateInterest } from './compounded-interest.ts';
+export type { CompoundedLate } from './compounded-interest.ts';
 export { addCalendarDays, dayNumber, daysBetween, fromDayNumber, weekday } from './dates.ts';
 export type { BusinessDate } from './dates.ts';
 export { dueDate } from './due-date.ts';
