@@ -1,18 +1,19 @@
 import { must } from '../arithmetic/index.ts';
+import { dayNumber } from '../due/index.ts';
 import { cents, sum, type Cents } from '../money/index.ts';
 import type { DrawInput, DrawLine } from './types.ts';
 
 const MOST_LINES = 10_000;
-const DATE = /^\d{4}-\d{2}-\d{2}$/;
 
 /** What must hold before anything is computed. Throws InvalidInput naming the line's field. */
 export function checkDraw(input: DrawInput, contractSumTodayCents: Cents): void {
   const { lines, style, before, throughOn } = input;
   must(contractSumTodayCents >= 0, 'contractSumAsSignedCents', contractSumTodayCents, 'must not fall below zero with its changes');
   must(lines.length <= MOST_LINES, 'lines', lines, `must be at most ${MOST_LINES} lines`);
-  must(DATE.test(throughOn), 'throughOn', throughOn, 'must be a date such as 2027-03-15');
+  dayNumber(throughOn, 'throughOn');
   must(before.throughOn === null || throughOn >= before.throughOn, 'throughOn', throughOn, 'must not end before the last draw');
-  must(input.withheldCents >= 0, 'withheldCents', input.withheldCents, 'must not be negative');
+  must(cents(input.withheldCents, 'withheldCents') >= 0, 'withheldCents', input.withheldCents, 'must not be negative');
+  must(cents(before.creditCents, 'before.creditCents') >= 0, 'before.creditCents', before.creditCents, 'must not be negative');
   const ids = new Set<string>();
   lines.forEach((line, i) => {
     const field = `lines.${i}`;

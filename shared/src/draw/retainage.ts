@@ -98,8 +98,8 @@ function layOut(held: Cents, exact: readonly bigint[]): Cents[] {
   return split(held, exact.map((share) => (share > 0n ? Number(share / scale) : 0)));
 }
 
-/** A withholding's ceiling: the state's share of the disputed sum (150 % or 110 % in statutes). Defer to counsel. */
+/** A withholding's ceiling: the state's share of the disputed sum (150 % or 110 % in statutes). Defer to counsel. Throws InvalidInput. */
 export function withholdingLimit(disputedCents: Cents, limitRate: BasisPoints): Cents {
-  must(disputedCents >= 0, 'disputedCents', disputedCents, 'must not be negative');
+  must(cents(disputedCents, 'disputedCents') >= 0, 'disputedCents', disputedCents, 'must not be negative');
   return percentOf(disputedCents, basisPoints(limitRate, 'limitRate', 0, 30_000));
 }

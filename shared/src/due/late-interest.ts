@@ -27,6 +27,8 @@ const MONTHS = 12n;
 /** Simple interest on a late payment, rounded once to the cent; the due date itself bears none. Throws InvalidInput. */
 export function lateInterest(terms: LateTerms, payment: LatePayment): { days: number; interestCents: Cents; steps: Step } {
   basisPoints(terms.rate, 'terms.rate');
+  if (terms.capRate !== undefined) basisPoints(terms.capRate, 'terms.capRate');
+  must(terms.basis === 360 || terms.basis === 365, 'terms.basis', terms.basis, 'must be 360 or 365 days');
   must(Number.isSafeInteger(terms.graceDays) && terms.graceDays >= 0, 'terms.graceDays', terms.graceDays, 'must be a whole number of days');
   must(cents(payment.amountCents, 'amountCents') >= 0, 'amountCents', payment.amountCents, 'must not be negative');
   const late = Math.max(0, daysBetween(payment.dueOn, payment.paidOn));

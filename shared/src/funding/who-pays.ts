@@ -38,7 +38,7 @@ export interface WhoPays {
 export function whoPays(input: WhoPaysInput): WhoPays {
   const { dueNowCents: due, ownLines, equity, loan } = input;
   must(cents(due, 'dueNowCents') >= 0, 'dueNowCents', due, 'must not be negative');
-  const ownLinesCents = clamp(minus(ownLines.toDateCents, ownLines.beforeCents, 'ownLines'), due);
+  const ownLinesCents = clamp(minus(cents(ownLines.toDateCents, 'ownLines.toDateCents'), cents(ownLines.beforeCents, 'ownLines.beforeCents')), due);
   const afterOwn = minus(due, ownLinesCents);
   const equityCents = equityPart(equity, afterOwn);
   const afterEquity = minus(afterOwn, equityCents);
@@ -65,10 +65,11 @@ function equityPart(equity: Equity, most: Cents): Cents {
 
 function loanOffer(loan: NonNullable<WhoPaysInput['loan']>): { cents: Cents; step: Step } {
   const keep = 10_000 - basisPoints(loan.holdbackRate, 'loan.holdbackRate');
-  must(cents(loan.undisbursedCents, 'loan.undisbursedCents') >= 0, 'loan.undisbursedCents', loan.undisbursedCents, 'must not be negative');
+  for (const name of ['undisbursedCents', 'fundedBeforeCents'] as const) must(cents(loan[name], `loan.${name}`) >= 0, `loan.${name}`, loan[name], 'must not be negative');
   const lines = loan.budget.map((position, i) => {
     const allowed = basisPoints(position.allowedRate, `loan.budget.${i}.allowedRate`);
-    const ceiling = divideRounded(BigInt(cents(position.budgetCents, `loan.budget.${i}.budgetCents`)) * BigInt(allowed) * BigInt(keep), 100_000_000n);
+    must(cents(position.budgetCents, `loan.budget.${i}.budgetCents`) >= 0, `loan.budget.${i}.budgetCents`, position.budgetCents, 'must not be negative');
+    const ceiling = divideRounded(BigInt(position.budgetCents) * BigInt(allowed) * BigInt(keep), 100_000_000n);
     const taken = Math.min(cents(position.approvedNetCents, `loan.budget.${i}.approvedNetCents`), ceiling);
     return { taken, step: step(position.name, 'the lesser of what is approved and what the lender allows of its line, less its holdback', money(taken), [given('approved, net', money(position.approvedNetCents)), given('budget', money(position.budgetCents)), given('allowed', rate(allowed)), given('holdback', rate(loan.holdbackRate))]) };
   });

@@ -17,9 +17,9 @@ export function formatAmount(amount: Cents): string {
   return `${amount < 0 ? MINUS : ''}${digits(amount)}`;
 }
 
-/** 725 is "7.25 %", 1000 is "10 %". */
+/** 725 is "7.25 %", 1000 is "10 %". Throws InvalidInput for a fraction of a basis point. */
 export function formatRate(rate: BasisPoints): string {
-  const size = Math.abs(rate);
+  const size = Math.abs(cents(rate, 'rate'));
   const fraction = String(size % 100).padStart(2, '0').replace(/0+$/, '');
   return `${rate < 0 ? MINUS : ''}${Math.trunc(size / 100)}${fraction === '' ? '' : `.${fraction}`} %`;
 }

@@ -18,9 +18,9 @@ export function percentOf(amount: Cents, rate: BasisPoints, field = 'amount'): C
   return divideRounded(BigInt(cents(amount, field)) * BigInt(cents(rate, field)), 10_000n, field);
 }
 
-/** The same without rounding, in dollars as text, for an arithmetic step: 123.45 at 7.25 % is "8.950125". */
+/** The same without rounding, in dollars as text, for an arithmetic step: 123.45 at 7.25 % is "8.950125". Throws InvalidInput. */
 export function percentExact(amount: Cents, rate: BasisPoints): string {
-  return fixed(BigInt(amount) * BigInt(rate), 6);
+  return fixed(BigInt(cents(amount)) * BigInt(cents(rate, 'rate')), 6);
 }
 
 /** A scaled integer as decimal text without trailing zeros beyond two places: 8950125 with 6 places is "8.950125". */

@@ -14,7 +14,7 @@ type Part = Omit<PoleMilestone, 'id' | 'state'> & { id: string | null; state: Po
  * what is proven, billed and paid and never above the band. A pole without money has bands of equal height. Throws InvalidInput.
  */
 export function polePicture(input: PoleInput, height: number): PolePicture {
-  must(height > 0, 'height', height, 'must be more than zero');
+  must(height > 0 && Number.isFinite(height), 'height', height, 'must be more than zero');
   const parts = partsOf(input);
   const total = sum(parts.map((part) => Math.max(0, part.scheduledCents)));
   const bands: Band[] = [];
@@ -91,7 +91,7 @@ export function withoutPrices(input: PoleInput): PoleInput {
   return {
     milestones: input.milestones.map(blind),
     general: blind(input.general),
-    expectedTodayCents: input.expectedTodayCents === null ? null : share(input.expectedTodayCents),
+    expectedTodayCents: input.expectedTodayCents === null ? null : share(cents(input.expectedTodayCents, 'expectedTodayCents')),
     prices: false,
   };
 }
