@@ -52,6 +52,20 @@ describe('what the database itself refuses', () => {
     expect(open.map(({ table_name: name }) => name)).toEqual([]);
   });
 
+  it('keeps what one actor may reach from the next one in the same transaction', async () => {
+    const counted = await house.as('app_read', async (client: pg.Client) => {
+      const seen: pg.QueryResultRow[] = [];
+      await client.query('begin');
+      for (const person of [homeownerId, strangerId, homeownerId]) {
+        await client.query(`select set_config('app.actor', $1, true)`, [person]);
+        seen.push(...((await client.query('select count(*)::int as jobs, (select count(*)::int from person where id = $2) as known from job where id = $1', [jobId, homeownerId])).rows as pg.QueryResultRow[]));
+      }
+      await client.query('rollback');
+      return seen;
+    });
+    expect(counted).toEqual([{ jobs: 1, known: 1 }, { jobs: 0, known: 0 }, { jobs: 1, known: 1 }]);
+  });
+
   it('gives every table that names a job a policy by firm or job', async () => {
     const rows = await house.sql<{ table_name: string; expression: string }>(
       `select c.relname as table_name, string_agg(coalesce(pg_get_expr(p.polqual, p.polrelid), '') || coalesce(pg_get_expr(p.polwithcheck, p.polrelid), ''), ' ') as expression

@@ -1,3 +1,4 @@
+import { createSecretKey } from 'node:crypto';
 import { Inject, Injectable } from '@nestjs/common';
 import type { Request } from 'express';
 import { PassportStrategy } from '@nestjs/passport';
@@ -16,7 +17,9 @@ interface AccessPayload {
 export class JwtStrategy extends PassportStrategy(Strategy) {
   constructor(@Inject(CONFIGURATION) configuration: Configuration) {
     const cookies = new SessionCookies(configuration.PUBLIC_URL);
-    super({ jwtFromRequest: (request: Request) => cookies.access(request), secretOrKey: configuration.JWT_SECRET, algorithms: ['HS256'] });
+    // as a key object: of a text the verifier would try first, each time, whether it is a public key
+    const secretOrKey = createSecretKey(configuration.JWT_SECRET, 'utf8') as unknown as string;
+    super({ jwtFromRequest: (request: Request) => cookies.access(request), secretOrKey, algorithms: ['HS256'] });
   }
 
   validate(payload: AccessPayload): Actor {

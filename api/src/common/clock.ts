@@ -13,7 +13,12 @@ export class Clock {
   }
 }
 
+// making one takes longer than all the rest of a small answer
+const formats = new Map<string, Intl.DateTimeFormat>();
+
 /** The date of an instant in a time zone, YYYY-MM-DD. */
 export function businessDate(instant: Date, timeZone: string): string {
-  return new Intl.DateTimeFormat('en-CA', { timeZone, year: 'numeric', month: '2-digit', day: '2-digit' }).format(instant);
+  const known = formats.get(timeZone) ?? new Intl.DateTimeFormat('en-CA', { timeZone, year: 'numeric', month: '2-digit', day: '2-digit' });
+  formats.set(timeZone, known);
+  return known.format(instant);
 }

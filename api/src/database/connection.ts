@@ -1,5 +1,6 @@
 import pg from 'pg';
 import type { SequelizeModuleOptions } from '@nestjs/sequelize';
+import { PreparingClient } from './preparing-client.ts';
 
 const INT8 = 20;
 // bigint columns hold cents and sequence numbers: give numbers, and refuse what a number can't hold exactly
@@ -17,7 +18,7 @@ export function connectionOptions(url: string, poolSize: number): SequelizeModul
   const { hostname, port, username, password, pathname } = new URL(url);
   return {
     dialect: 'postgres',
-    dialectModule: pg,
+    dialectModule: { ...pg, Client: PreparingClient },
     host: hostname,
     port: Number(port || 5432),
     username: decodeURIComponent(username),

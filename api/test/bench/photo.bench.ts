@@ -1,3 +1,4 @@
+import { randomUUID } from 'node:crypto';
 import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
@@ -5,6 +6,7 @@ import { Readable } from 'node:stream';
 import sharp from 'sharp';
 import { photoSizes } from '@tallypole/shared/schemas/photos';
 import { LocalDiskStorage } from '../../src/files/local-disk-storage.ts';
+import { newStorageKey } from '../../src/files/storage-key.ts';
 import { readOrigin } from '../../src/photos/read-exif.ts';
 import { renderSizes } from '../../src/photos/render-sizes.ts';
 import { jpeg } from '../support/photos.ts';
@@ -15,7 +17,10 @@ it('a photo of 12 megapixels, against sharp alone', async () => {
   const storage = new LocalDiskStorage(folder);
   const picture = await jpeg({ width: 4_000, height: 3_000, taken: '2026:11:12 09:30:15', offset: '-05:00', at: { latitude: 39.4, longitude: -84.5, accuracyM: 8 } });
   let count = 0;
-  const store = async (content: Buffer) => await storage.put(`bench/${(count += 1)}`, Readable.from([content]));
+  const store = async (content: Buffer) => {
+    count += 1;
+    await storage.put(newStorageKey(randomUUID(), randomUUID(), new Date()), Readable.from([content]));
+  };
   const ours = () =>
     timed(async () => {
       await store(picture);

@@ -1,15 +1,10 @@
-import { spawnSync } from 'node:child_process';
+import { fork, spawnSync, type ChildProcess } from 'node:child_process';
 import path from 'node:path';
-import { NestFactory } from '@nestjs/core';
-import type { INestApplicationContext } from '@nestjs/common';
 import { connect } from '../../../mocks/postgres.mjs';
-import { PaymentSettlement } from '../../src/payments/payment-settlement.ts';
-import { StripeClient } from '../../src/payments/stripe-client.ts';
-import type { PaymentFacts, SessionFacts } from '../../src/payments/stripe-facts.ts';
 import { approvedDraw, ledgerState, lentJob, type LentJob } from '../support/draw-builders.ts';
 import { House } from '../support/house.ts';
 import { multiply } from './multiply.ts';
-import { byTurns, note, timed } from './rows.ts';
+import { byTurns, note } from './rows.ts';
 
 const CLIENTS = 8;
 const PAYMENTS = 400;
@@ -17,7 +12,7 @@ const SECONDS = 4;
 
 describe('a settled payment', () => {
   let house: House;
-  let app: INestApplicationContext;
+  let settling: ChildProcess | undefined;
   let lent: LentJob;
   const server = connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]);
 
@@ -31,20 +26,18 @@ describe('a settled payment', () => {
     await multiply(house, lent.firmId, CLIENTS - 1, 1);
     // one payment at a time is the rule for people; here they are many, of a cent each
     await house.sql('drop index one_payment_under_way');
-    Object.assign(process.env, house.env);
-    const { WorkerModule } = await import('../../src/worker.module.ts');
-    app = await NestFactory.createApplicationContext(WorkerModule, { logger: false });
-    // Stripe answers at once, since its speed is not what is measured
-    Object.assign(app.get(StripeClient), { session: (_: string, id: string) => Promise.resolve(session(id)), payment: (_: string, id: string) => Promise.resolve(settled(id)) });
+    settling = fork(path.join(import.meta.dirname, 'settle-payments.mjs'), { execArgv: [], env: house.env });
+    await answer();
     server.createDatabase('pgbench', 'template1');
     pgbench('-i', '-s', '10', '-q');
   });
   afterAll(async () => {
-    await app.close();
+    settling?.disconnect();
     server.dropDatabase('pgbench');
     await house.close();
   });
 
+  const answer = () => new Promise<{ took: number }>((done, fail) => settling?.once('message', (message) => done(message as { took: number })).once('exit', (code) => fail(new Error(`It ended with ${code}.`))));
   const pgbench = (...args: string[]): string => {
     const { bin, port, passwords } = server.address;
     const done = spawnSync(path.join(bin, 'pgbench'), [...args, '-h', '127.0.0.1', '-p', String(port), '-U', 'postgres', 'pgbench'], { env: { PGPASSWORD: passwords['postgres'] }, encoding: 'utf8' });
@@ -63,11 +56,8 @@ describe('a settled payment', () => {
        returning id, firm_id as firm`,
       [lent.ann.email, jobs, PAYMENTS],
     );
-    const settlement = app.get(PaymentSettlement);
-    const waiting = payments.sort((a, b) => a.id.localeCompare(b.id));
-    const took = await timed(() => Promise.all(Array.from({ length: CLIENTS }, async () => {
-      for (let next = waiting.pop(); next; next = waiting.pop()) await settlement.check(next.firm, next.id);
-    })));
+    settling?.send({ payments: payments.sort((a, b) => a.id.localeCompare(b.id)), clients: CLIENTS });
+    const { took } = await answer();
     return (PAYMENTS / took) * 1_000;
   };
 
@@ -80,6 +70,3 @@ describe('a settled payment', () => {
     expect(await house.sql(`select count(*)::int as n from payment where state = 'processing'`)).toEqual([{ n: 0 }]);
   });
 });
-
-const session = (id: string): SessionFacts => ({ id, status: 'complete', url: null, expiresAt: new Date('2099-01-01'), intentId: id.replace('cs_', 'pi_'), paymentId: id.slice('cs_'.length) });
-const settled = (intentId: string): PaymentFacts => ({ intentId, paymentId: intentId.slice('pi_'.length), status: 'succeeded', attempted: true, receivedCents: 1, feeCents: 0, failure: null, failureCode: null, refunds: [], disputes: [] });

@@ -75,11 +75,29 @@ begin
   return who;
 end $$;
 
-create function app.my_firms() returns uuid[] language sql stable security definer set search_path = public, pg_temp as $$
-  select coalesce(array_agg(firm_id), '{}') from (
-    select firm_id from firm_member where person_id = app.actor()
-    union select system_of from person where id = app.actor() and system_of is not null) f
-$$;
+-- What an actor may reach is asked by every policy of a statement. In a read-only transaction nothing of it can change, so the first
+-- answer is kept for the rest, under the actor's name; elsewhere it is asked anew, since the transaction itself may change it.
+create function app.kept(p_name text) returns uuid[] language plpgsql stable as $$
+declare kept text := current_setting('app.kept_' || p_name, true);
+begin
+  if current_setting('transaction_read_only') = 'off' or kept is null or not starts_with(kept, app.actor()::text) then return null; end if;
+  return substr(kept, 37)::uuid[];
+end $$;
+
+create function app.keep(p_name text, p_ids uuid[]) returns uuid[] language plpgsql stable as $$
+begin
+  if current_setting('transaction_read_only') = 'on' then perform set_config('app.kept_' || p_name, app.actor() || p_ids::text, true); end if;
+  return p_ids;
+end $$;
+
+create function app.my_firms() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); kept uuid[] := app.kept('firms');
+begin
+  if kept is not null then return kept; end if;
+  return app.keep('firms', (select coalesce(array_agg(firm_id), '{}') from (
+    select firm_id from firm_member where person_id = me
+    union select system_of from person where id = me and system_of is not null) f));
+end $$;
 
 alter table firm_member enable row level security;
 alter table firm_member force row level security;
@@ -94,7 +112,7 @@ grant select on session to app_read, app_write;
 grant update (ended_at, present_at) on session to app_write;
 grant update (name) on person to app_write;
 revoke all on all functions in schema app from public;
-grant execute on function app.actor, app.my_firms to app_read, app_write, app_worker;
+grant execute on function app.actor, app.my_firms, app.kept, app.keep to app_read, app_write, app_worker;
 grant execute on function app.act_as to app_read, app_write;
 grant execute on function app.act_as_system to app_worker;
 `;

@@ -68,19 +68,25 @@ create unique index one_open_invitation on invitation (job_id, email, role) wher
 create index on invitation (email) where accepted_at is null and revoked_at is null;
 create index on invitation (job_id);
 
-create function app.my_jobs() returns uuid[] language sql stable security definer set search_path = public, pg_temp as $$
-  select coalesce(array_agg(distinct job_id), '{}') from job_member where person_id = app.actor() and ended_at is null
-$$;
+create function app.my_jobs() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); kept uuid[] := app.kept('jobs');
+begin
+  if kept is not null then return kept; end if;
+  return app.keep('jobs', (select coalesce(array_agg(distinct job_id), '{}') from job_member where person_id = me and ended_at is null));
+end $$;
 
 -- the people I share a firm or a job with, in either direction
-create function app.my_people() returns uuid[] language sql stable security definer set search_path = public, pg_temp as $$
-  with jobs as (
-    select id, firm_id from job where firm_id = any(app.my_firms()) or id = any(app.my_jobs()))
-  select coalesce(array_agg(distinct p), '{}') from (
-    select app.actor() as p
-    union select m.person_id from firm_member m where m.firm_id = any(app.my_firms()) or m.firm_id in (select firm_id from jobs)
-    union select m.person_id from job_member m where m.job_id in (select id from jobs)) x
-$$;
+create function app.my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs(); kept uuid[] := app.kept('people');
+begin
+  if kept is not null then return kept; end if;
+  return app.keep('people', (
+    with reached as (select id, firm_id from job where firm_id = any(firms) or id = any(jobs))
+    select coalesce(array_agg(distinct p), '{}') from (
+      select me as p
+      union select m.person_id from firm_member m where m.firm_id = any(firms) or m.firm_id in (select firm_id from reached)
+      union select m.person_id from job_member m where m.job_id in (select id from reached)) x));
+end $$;
 
 -- one trip instead of three: is the session alive, who acts, and as what on this job
 create function app.act_on_job(p_session uuid, p_person uuid, p_now timestamptz, p_job uuid) returns text[]
