@@ -136,7 +136,7 @@ describe('what people answer to a change', () => {
     if (shots) await ada.shot(`${shots}/designer-1280.png`);
     expect(await ada.axe()).toEqual([]);
     await ada.press('Attach the review');
-    await ada.sees('letter.pdf');
+    await ada.page.getByRole('link', { name: 'letter.pdf' }).waitFor();
     await builder.page.reload();
     await builder.press('Send out for +$951.37');
     await builder.sees('Waits for a decision');

@@ -69,7 +69,7 @@ describe('a change, from its price to the last signature', () => {
     await builder.page.getByLabel('License').fill('OH 55512');
     await builder.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
     await builder.press('Attach the review');
-    await builder.sees('joist-sheet.pdf');
+    await builder.page.getByRole('link', { name: 'joist-sheet.pdf' }).waitFor();
     await shoot(builder, 'firm-1280');
     await builder.press(/^Send out for \+\$951\.37/);
     await builder.sees('Waits for a decision');

@@ -17,9 +17,17 @@ const PopupWindow = ({ label, place, width, onClose, onLeave, children }: PopupW
   const phone = useMediaQuery('(max-width: 47.99em)', undefined, { getInitialValueInEffect: false });
   if (phone) {
     return (
-      <Drawer opened onClose={onClose} position="bottom" size="auto" title={label} closeButtonProps={{ 'aria-label': 'Close', size: 'lg' }} transitionProps={{ duration: 0 }}>
-        {children}
-      </Drawer>
+      <Drawer.Root opened onClose={onClose} position="bottom" size="auto" transitionProps={{ duration: 0 }}>
+        <Drawer.Overlay />
+        <Drawer.Content>
+          {/* the drawer's own head would be a second banner of the page */}
+          <div className={classes['head']}>
+            <Drawer.Title>{label}</Drawer.Title>
+            <Drawer.CloseButton aria-label="Close" size="lg" />
+          </div>
+          <Drawer.Body>{children}</Drawer.Body>
+        </Drawer.Content>
+      </Drawer.Root>
     );
   }
   return (
