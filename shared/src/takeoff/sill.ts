@@ -25,7 +25,7 @@ export function sillAnchorage({ pieces, maxSpacing, endDistance, boltDiameter }:
   must(end >= DIAMETERS * lengthOf(boltDiameter, 'sill.boltDiameter'), 'sill.endDistance', endDistance, 'must be at least 7 bolt diameters');
   const perPiece = pieces.map((piece, i) => {
     const between = lengthOf(piece, `sill.pieces.${i}`) - 2n * end;
-    return between <= 0n ? 2 : Math.max(2, countOf(ceilDivide(between, spacing)) + 1);
+    return between <= 0n ? 2 : countOf(ceilDivide(between, spacing)) + 1;
   });
   const bolts = perPiece.reduce((sum, count) => sum + count, 0);
   const steps = step('Anchor bolts', 'in each piece at least two: what is between the end bolts ÷ spacing, rounded up, and one more', quantity(bolts, 'ea'), [

@@ -35,6 +35,11 @@ describe('members', () => {
     expect(memberLength({ clearSpan: '168', bearings: '0', lap: '0', stock: commonStock }).stockFeet).toBe(14);
     expect(memberLength({ clearSpan: '168.0625', bearings: '0', lap: '0', stock: commonStock }).stockFeet).toBe(16);
   });
+  it('give board feet that are rounded once, half up', () => {
+    // 2 × 10 × 16 ÷ 12 = 26.666…, three of them 80
+    expect(boardFeet([{ thickness: 2, width: 10, length: '16', count: 1 }]).boardFeet).toBe('26.667');
+    expect(boardFeet(Array.from({ length: 3 }, () => ({ thickness: 2, width: 10, length: '16', count: 1 }))).boardFeet).toBe('80.00');
+  });
   it('give board feet that do not depend on the order of pieces', () => {
     fc.assert(fc.property(fc.array(fc.record({ thickness: fc.constantFrom(1, 2, 4), width: fc.integer({ min: 2, max: 12 }), length: fc.integer({ min: 1, max: 240 }).map((n) => (n / 10).toFixed(1)), count: fc.integer({ min: 0, max: 90 }) }), { minLength: 1, maxLength: 8 }), (pieces) => {
       expect(boardFeet([...pieces].reverse()).boardFeet).toBe(boardFeet(pieces).boardFeet);
@@ -103,4 +108,29 @@ describe('edges, sheets, fasteners, adhesive, bolts and concrete', () => {
     expect(concrete([slab], 0)).toMatchObject({ net: '7.1111', ordered: '7.25' });
     expect(concrete([slab], 1_000)).toMatchObject({ net: '7.1111', ordered: '8.00' });
   });
+});
+
+describe('wrong entries are refused, each at its field', () => {
+  const anchorage = { pieces: ['192'], maxSpacing: '72', endDistance: '12', boltDiameter: '0.5' };
+  it.each<[string, string, () => unknown]>([
+    ['a run of nothing', 'run', () => membersOnCenter({ run: '0', spacing: '16', bays: 1, extras: 0 })],
+    ['a spacing below nothing', 'spacing', () => membersOnCenter({ run: '400', spacing: '-16', bays: 1, extras: 0 })],
+    ['half a bay', 'bays', () => membersOnCenter({ run: '400', spacing: '16', bays: 0.5, extras: 0 })],
+    ['extras below nothing', 'extras', () => membersOnCenter({ run: '400', spacing: '16', bays: 1, extras: -1 })],
+    ['a member longer than any stock', 'clearSpan', () => memberLength({ clearSpan: '400', bearings: '3', lap: '0', stock: commonStock })],
+    ['stock of half a foot', 'stock', () => memberLength({ clearSpan: '100', bearings: '3', lap: '0', stock: [8.5] })],
+    ['five places', 'clearSpan', () => memberLength({ clearSpan: '100.00001', bearings: '3', lap: '0', stock: commonStock })],
+    ['no plate piece', 'sill.pieces', () => sillAnchorage({ ...anchorage, pieces: [] })],
+    ['bolts too far apart', 'sill.maxSpacing', () => sillAnchorage({ ...anchorage, maxSpacing: '73' })],
+    ['an end bolt too far in', 'sill.endDistance', () => sillAnchorage({ ...anchorage, endDistance: '13' })],
+    ['an end bolt too near the end', 'sill.endDistance', () => sillAnchorage({ ...anchorage, endDistance: '3' })],
+    ['openings larger than the deck', 'openingsFt2', () => sheathingByArea({ areaFt2: '100', openingsFt2: '100', wasteRate: 0 })],
+    ['waste of more than all', 'wasteRate', () => sheathingByArea({ areaFt2: '100', openingsFt2: '0', wasteRate: 10_001 })],
+    ['no pour', 'pours', () => concrete([], 0)],
+    ['a pour without thickness', 'pours.0.thickness', () => concrete([{ label: 'Slab', length: '100', width: '100', thickness: '0', count: 1 }], 0)],
+    ['blocks without room', 'blocking.spacing', () => blocking({ spaces: 3, spacing: '1', memberThickness: '1.5', stockFeet: 16 })],
+    ['no rim', 'rim.runs', () => rim([], 16)],
+    ['three ends', 'hangers.endsPerMember', () => hangers(3, 3)],
+    ['a bead of no width', 'adhesive.beadDiameter', () => feetPerCartridge(28, '0')],
+  ])('%s', (_, field, work) => expect(work).toThrow(expect.objectContaining({ name: 'InvalidInput', field }) as InvalidInput));
 });
