@@ -15,4 +15,9 @@ export class MoneyController {
   get(@CurrentActor() actor: Actor, @Param('jobId', { schema: Id }) jobId: string): Promise<S.JobMoney> {
     return this.service.money(actor, jobId);
   }
+
+  @Get('ahead') @Route('money.read', 'read') @ApiOkResponse({ standardSchema: S.JobCashAhead })
+  ahead(@CurrentActor() actor: Actor, @Param('jobId', { schema: Id }) jobId: string): Promise<S.JobCashAhead> {
+    return this.service.ahead(actor, jobId);
+  }
 }

@@ -40,3 +40,6 @@ function real(year: number, month: number, day: number): string | null {
 
 /** Today's business date in a time zone. */
 export const todayIn = (timeZone: string): string => new Intl.DateTimeFormat('en-CA', { timeZone, year: 'numeric', month: '2-digit', day: '2-digit' }).format(new Date());
+
+/** "2027-03" as "March 2027". */
+export const writtenMonth = (month: string): string => new Intl.DateTimeFormat('en-US', { timeZone: 'UTC', year: 'numeric', month: 'long' }).format(new Date(`${month}-01T00:00:00Z`));

@@ -28,3 +28,37 @@ export const JobMoney = z.object({
   payments: z.array(Payment),
 });
 export type JobMoney = z.infer<typeof JobMoney>;
+
+const cents = z.int();
+const CashMonth = z.object({
+  /** YYYY-MM. */
+  month: z.string(),
+  homeownerCents: cents,
+  loanCents: cents,
+  notFundedCents: cents,
+  totalCents: cents,
+  runningCents: cents,
+  carriedCents: cents,
+  /** Changes that are out, should they be signed; in no other figure. */
+  issuedCents: cents,
+  runningWithIssuedCents: cents,
+  steps: Step,
+});
+/** What has still to be paid, month by month: a forecast, not a demand. */
+export const JobCashAhead = z.object({
+  asOf: BusinessDate,
+  ahead: z
+    .object({
+      months: z.array(CashMonth),
+      leftToBillCents: cents,
+      approvedUnpaidCents: cents,
+      depositLeftCents: cents,
+      withheldCents: cents,
+      creditCents: cents,
+      totalCents: cents,
+      issuedCents: cents,
+      steps: Step,
+    })
+    .nullable(),
+});
+export type JobCashAhead = z.infer<typeof JobCashAhead>;

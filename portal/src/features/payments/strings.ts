@@ -19,6 +19,12 @@ export const strings = {
     confirm: 'We have it',
     confirmed: 'Recorded as received.',
   },
+  ahead: {
+    title: 'Cash ahead',
+    explain: 'What has still to be paid, in the months in which it is expected to fall due. It follows from the days that are planned now: a forecast, not a demand for payment.',
+    month: 'Month', homeowner: 'Homeowner', loan: 'Loan', notFunded: 'Not funded yet', total: 'In the month', running: 'So far', issued: 'If what waits is signed',
+    sum: 'In all',
+  },
   record: {
     title: 'Record a check or wire',
     what: 'For',

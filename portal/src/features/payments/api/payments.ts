@@ -1,5 +1,5 @@
 import { queryOptions } from '@tanstack/react-query';
-import type { JobMoney } from '@tallypole/shared/schemas/money';
+import type { JobCashAhead, JobMoney } from '@tallypole/shared/schemas/money';
 import type { ConfirmReceipt, Payment, PaymentProgress, RecordPayment } from '@tallypole/shared/schemas/payments';
 import type { Payouts } from '@tallypole/shared/schemas/payouts';
 import { get, post } from '../../../lib/http.ts';
@@ -8,6 +8,7 @@ const CONFIRMING_MS = 2_000;
 const ON_ITS_WAY_MS = 15_000;
 
 export const moneyQuery = (jobId: string) => queryOptions({ queryKey: ['jobs', jobId, 'money'], queryFn: ({ signal }) => get<JobMoney>(`jobs/${jobId}/money`, signal) });
+export const aheadQuery = (jobId: string) => queryOptions({ queryKey: ['jobs', jobId, 'money', 'ahead'], queryFn: ({ signal }) => get<JobCashAhead>(`jobs/${jobId}/money/ahead`, signal) });
 
 /** One payment, asked for until it is decided. */
 export const progressQuery = (jobId: string, paymentId: string) =>

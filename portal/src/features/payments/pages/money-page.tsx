@@ -14,6 +14,7 @@ import { Money } from '../../../ui/money.tsx';
 import { FailureState, LoadingState, PageHead, Section } from '../../../ui/page.tsx';
 import { PaymentTable } from '../../../ui/payment-table.tsx';
 import { moneyQuery } from '../api/payments.ts';
+import { CashAhead } from '../components/cash-ahead.tsx';
 import { ConfirmButton } from '../components/confirm-button.tsx';
 import { RecordForm } from '../components/record-form.tsx';
 import classes from '../components/payments.module.css';
@@ -62,6 +63,7 @@ function JobMoneyView({ job, money }: { job: Job; money: JobMoney }) {
           <DataTable caption={words.draws} columns={COLUMNS} rows={money.draws} rowKey={({ id }) => id} />
         </Section>
       )}
+      <CashAhead jobId={job.id} />
       <Section title={words.payments}>
         {money.payments.length === 0 ? <p className="quiet">{words.noPayments}</p> : <Payments job={job} money={money} records={records} />}
       </Section>
