@@ -28,10 +28,11 @@ import { PeopleModule } from './people/people.module.ts';
 import { PhotosModule } from './photos/photos.module.ts';
 import { QueueModule } from './queue/queue.module.ts';
 import { RecordModule } from './record/record.module.ts';
+import { RecordPagesModule } from './record/record-pages.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, RecordPagesModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, DemoModule],
   controllers: [HealthController],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },

@@ -299,6 +299,15 @@ describe('a first job, from contract to paid draw', () => {
     }
     await vera.goto('/lending');
     await vera.sees('No draw waits for you.');
+    // what is still to be paid is what the ledger leaves: left to bill less the deposit's rest
+    await ida.goto(`${job}/money`);
+    await ida.page.getByRole('heading', { name: 'Cash ahead' }).waitFor();
+    await ida.sees('$397,322.73');
+    // the record is computed anew in the reader's own browser
+    await ida.goto(`${job}/record`);
+    await ida.press('Check the record');
+    await ida.sees(/^All \d+ entries hold\. The last hash is [0-9a-f]{64}\.$/);
+    expect([await ida.axe(), await ida.overflows()]).toEqual([[], false]);
     clean();
   });
 

@@ -3,8 +3,9 @@ import type { ChangeState } from '@tallypole/shared/schemas/change-states';
 import type { Change, CostLine, PricingTermsInput } from '@tallypole/shared/schemas/changes';
 import type { DayKind } from '@tallypole/shared/due';
 import type { OwnersLine } from '@tallypole/shared/pricing';
+import { canonicalText } from '@tallypole/shared/record';
 import { createHash } from 'node:crypto';
-import { canonical, type Json } from '../common/canonical.ts';
+import type { Json } from '../common/canonical.ts';
 import { nextDraws, type NextDrawFacts } from '../draws/next-draw.ts';
 
 export interface SignerFact {
@@ -112,7 +113,7 @@ export function effectOf(facts: ChangeFacts): { effect: ChangeEffect; text: stri
   const effect = changeEffect(snapshotOf(facts));
   const { leftToBillCents: _before, ...before } = effect.before;
   const { leftToBillCents: _after, ...after } = effect.after;
-  const text = canonical({ ...effect, before, after } as unknown as Json);
+  const text = canonicalText({ ...effect, before, after } as unknown as Json);
   return { effect, text, hash: createHash('sha256').update(text).digest('hex') };
 }
 

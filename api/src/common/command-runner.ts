@@ -1,6 +1,7 @@
 import { Injectable } from '@nestjs/common';
+import { canonicalText } from '@tallypole/shared/record';
 import { createHash } from 'node:crypto';
-import { canonical, type Json } from './canonical.ts';
+import type { Json } from './canonical.ts';
 import { Problem } from './problem.ts';
 import { UnitOfWork, type Actor, type Tx } from './unit-of-work.ts';
 
@@ -26,7 +27,7 @@ export class CommandRunner {
   constructor(private readonly work: UnitOfWork) {}
 
   run<T extends Json | object>(actor: Actor, command: Command<T>): Promise<Answered<T>> {
-    const hash = createHash('sha256').update(canonical(command.input)).digest();
+    const hash = createHash('sha256').update(canonicalText(command.input)).digest();
     const id = [actor.personId, command.operation, command.key];
     return this.work.write(actor, async (tx) => {
       const claimed = await tx.one(

@@ -1,5 +1,6 @@
 import { Injectable } from '@nestjs/common';
-import { canonical, type Json } from '../common/canonical.ts';
+import { canonicalText } from '@tallypole/shared/record';
+import type { Json } from '../common/canonical.ts';
 import { Clock } from '../common/clock.ts';
 import type { Tx } from '../common/unit-of-work.ts';
 
@@ -28,7 +29,7 @@ export class RecordRepository {
 
   /** Appends one entry, as the last statement but the answer: it locks the head of the chain. Returns the anchor to print. */
   async append(tx: Tx, entry: RecordEntry): Promise<RecordAnchor> {
-    const text = canonical({ act: entry.act, at: this.clock.now().toISOString(), by: entry.by, data: entry.data, v: 1 });
+    const text = canonicalText({ act: entry.act, at: this.clock.now().toISOString(), by: entry.by, data: entry.data, v: 1 });
     const row = await tx.one<RecordAnchor>('select seq, hash from app.append_record($1, $2, $3, $4)', [entry.firmId, entry.jobId, entry.chain ?? 'shared', text]);
     if (!row) throw new Error('The record did not answer.');
     return row;

@@ -23,6 +23,7 @@ export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
     { path: 'draws/:drawId/payments/:paymentId', lazy: () => import('../features/payments/pages/payment-page.tsx') },
     { path: 'money', lazy: () => import('../features/payments/pages/money-page.tsx') },
     { path: 'loan', lazy: () => import('../features/lender/pages/loan-page.tsx') },
+    { path: 'record', lazy: () => import('../features/record/pages/record-page.tsx') },
     { path: 'site', lazy: () => import('../features/site/pages/site-page.tsx') },
     { path: 'site/:milestoneId', lazy: () => import('../features/site/pages/capture-page.tsx') },
   ],

@@ -17,6 +17,7 @@ const PAGES: readonly { to: string; label: string; permission: Permission }[] = 
   { to: 'draws', label: 'Draws', permission: 'draw.read' },
   { to: 'money', label: 'Money', permission: 'money.read' },
   { to: 'people', label: 'People', permission: 'people.read' },
+  { to: 'record', label: 'Record', permission: 'record.read' },
 ];
 
 export const JobLayout = () => (
