@@ -108,7 +108,7 @@ describe('changes', () => {
     });
     expect(createHash('sha256').update(paper.body as Buffer).digest('hex')).toBe(seen.document?.sha256);
     const text = spawnSync('pdftotext', ['-layout', '-', '-'], { input: paper.body as Buffer, encoding: 'utf8' }).stdout;
-    for (const figure of ['+$951.37', '$400,000.00', '$400,951.37', 'July 2, 2027', 'Deeper joists in the great room', seen.effectHash ?? '']) expect(text).toContain(figure);
+    for (const figure of ['+$951.37', '$400,000.00', '$400,951.37', 'July 2, 2027', 'Deeper joists in the great room', 'as signed + changes approved + this change', seen.effectHash ?? '']) expect(text).toContain(figure);
     expect(text).not.toMatch(/overhead|profit|mark-up/i);
 
     made(await signChange(lent, lent.ann, seen));

@@ -1,9 +1,11 @@
+import { changeSteps } from '@tallypole/shared/changes';
 import { formatChange, formatMoney } from '@tallypole/shared/money';
 import type { Column, Content } from 'pdfmake/interfaces.js';
 import { writtenBusinessDate, writtenDate } from '../common/written-date.ts';
+import { printedArithmetic } from '../documents/arithmetic.ts';
 import { beforeAfter, ruledTable } from '../documents/tables.ts';
 import type { Paper } from '../documents/pdf.ts';
-import { changeName, effectOf, nextDrawOf, type ChangeFacts, type SignerFact } from './change-facts.ts';
+import { changeName, effectOf, nextDrawOf, snapshotOf, type ChangeFacts, type SignerFact } from './change-facts.ts';
 import { nextDrawName, paperFundingWords, reviewWords, structuralCaution } from './words.ts';
 
 const days = (count: number) => (count === 1 ? '1 day' : `${count} days`);
@@ -14,6 +16,7 @@ export function changePaper(facts: ChangeFacts, today: string, pictures: readonl
   const { effect, hash } = effectOf(facts);
   const { before, after } = effect;
   const next = nextDrawOf(facts, today);
+  const { contractSum, completionDate } = changeSteps(snapshotOf(facts));
   const effects = [
     { name: 'Contract sum', before: formatMoney(before.contractSumCents), after: formatMoney(after.contractSumCents) },
     { name: 'Finished by', before: writtenBusinessDate(before.completionDate), after: writtenBusinessDate(after.completionDate) },
@@ -35,6 +38,8 @@ export function changePaper(facts: ChangeFacts, today: string, pictures: readonl
     ...(next ? [{ text: `The draw is worked out from what is proven and owed on ${writtenBusinessDate(today)}; it is no part of what is agreed.`, style: 'small', margin: [0, 4, 0, 0] } satisfies Content] : []),
     { text: `Who pays it: ${paperFundingWords[effect.funding]}.${effect.needsLendersWord ? ' The sum is above what may be agreed without the lender.' : ''}`, margin: [0, 8, 0, 0] },
     ...(change.milestoneName ? [{ text: `It lands on the milestone "${change.milestoneName}".` }] : []),
+    { text: 'How the figures are worked out', style: 'heading' },
+    printedArithmetic([contractSum, completionDate]),
     ...(change.structural ? structural(reviews.filter(({ current }) => current)) : []),
     { text: 'By signing, the homeowners agree to the change above, its price and its days, as an addition to the contract. Everything else in the contract stays as it is.', margin: [0, 18, 0, 0] },
     { text: `Effect ${hash}`, style: 'small', margin: [0, 10, 0, 0] },

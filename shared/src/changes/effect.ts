@@ -88,13 +88,17 @@ function fundingOf(hasLoan: boolean, charged: Cents): Funding {
   return hasLoan ? 'homeowner_until_lender_agrees' : 'homeowner';
 }
 
+/** The price of a change as its lines show it to whoever signs; how cost became price is the firm's. Throws InvalidInput. */
+export const priceSteps = ({ chargedCents, lines }: { chargedCents: Cents; lines: readonly Pick<OwnersLine, 'description' | 'cents'>[] }): Step =>
+  step('This change', 'sum of its lines', money(chargedCents), lines.map((line) => given(line.description, money(line.cents))));
+
 /** The arithmetic behind the three figures after signing. */
 export function changeSteps({ job, change }: ChangeSnapshot): Record<'contractSum' | 'completionDate' | 'leftToBill', Step> {
   const { after } = changeEffect({ job, change });
   const contractSum = step('Contract sum after signing', 'as signed + changes approved + this change', money(after.contractSumCents), [
     given('As signed', money(job.contractSumAsSignedCents)),
     given('Changes approved', money(job.changesApprovedCents)),
-    step('This change', 'sum of its lines', money(change.chargedCents), change.lines.map((line) => given(line.description, money(line.cents)))),
+    priceSteps(change),
   ]);
   const completionDate = step('Finished by', `completion date of the contract + approved days + the days of this change, in ${job.dayKind} days`, date(after.completionDate), [
     given('Completion date of the contract', date(job.completeBy)),

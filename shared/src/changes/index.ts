@@ -1,2 +1,2 @@
-export { changeEffect, changeSteps } from './effect.ts';
+export { changeEffect, changeSteps, priceSteps } from './effect.ts';
 export type { ChangeEffect, ChangeSnapshot, Funding, ReviewFact, ScopeLine } from './effect.ts';

@@ -18,3 +18,5 @@ export type {
   RetainageStep,
   RetainageTerms,
 } from './types.ts';
+export { lineSteps, rowSteps } from './row-steps.ts';
+export type { LineFigures, RowFigures } from './row-steps.ts';

@@ -1,5 +1,7 @@
+import { priceSteps } from '@tallypole/shared/changes';
 import type { Change } from '@tallypole/shared/schemas/changes';
 import { DataTable } from '../../../ui/data-table.tsx';
+import { Figure } from '../../../ui/figure.tsx';
 import { MoneyChange } from '../../../ui/money.tsx';
 import { Section } from '../../../ui/page.tsx';
 
@@ -19,7 +21,9 @@ export function Differs({ change }: { change: Change }) {
         Price of the change
       </th>
       <td style={{ textAlign: 'right' }} className="sum">
-        <MoneyChange cents={change.chargedCents ?? 0} />
+        <Figure steps={priceSteps({ chargedCents: change.chargedCents ?? 0, lines: change.lines })} label="Price of the change">
+          <MoneyChange cents={change.chargedCents ?? 0} />
+        </Figure>
       </td>
     </tr>
   );

@@ -1,9 +1,11 @@
 import { Button } from '@mantine/core';
+import { lineSteps } from '@tallypole/shared/draw';
 import { formatRate } from '@tallypole/shared/money';
 import type { Draw, DrawLine } from '@tallypole/shared/schemas/draws';
 import type { Job } from '@tallypole/shared/schemas/jobs';
 import { useState } from 'react';
 import { useIdempotencyKey } from '../../../lib/idempotency-key.ts';
+import { Figure } from '../../../ui/figure.tsx';
 import { Money } from '../../../ui/money.tsx';
 import { FailureState } from '../../../ui/page.tsx';
 import { withdrawObjection } from '../api/draw-acts.ts';
@@ -60,7 +62,9 @@ function AskedLine({ job, draw, line, objects }: Props & { line: DrawLine }) {
         <div className="quiet">{strings.ofScheduled(formatRate(line.billedRate), line.scheduledCents)}</div>
       </div>
       <div className={classes['sumNow']}>
-        <Money cents={line.thisDrawCents} />
+        <Figure steps={lineSteps({ ...line, id: line.lineId })} label={line.description}>
+          <Money cents={line.thisDrawCents} />
+        </Figure>
       </div>
       {line.objection ? <Objection job={job} draw={draw} line={line} withdraws={objects} /> : null}
       {objects && !line.objection && line.thisDrawCents > 0 ? (

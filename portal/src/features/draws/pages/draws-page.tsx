@@ -1,5 +1,6 @@
 import { useQuery } from '@tanstack/react-query';
 import { may } from '@tallypole/shared/schemas/permissions';
+import { rowSteps } from '@tallypole/shared/draw';
 import { sum } from '@tallypole/shared/money';
 import type { DrawRow } from '@tallypole/shared/schemas/draws';
 import { Link } from 'react-router-dom';
@@ -7,6 +8,7 @@ import { writtenDate } from '../../../lib/dates.ts';
 import { drawsQuery } from '../../../lib/draws.ts';
 import { useJob } from '../../../lib/job.ts';
 import { DataTable, type Column } from '../../../ui/data-table.tsx';
+import { Figure } from '../../../ui/figure.tsx';
 import { DrawTag } from '../../../ui/money-tags.tsx';
 import { Money } from '../../../ui/money.tsx';
 import { EmptyState, FailureState, LoadingState, PageHead, Section } from '../../../ui/page.tsx';
@@ -18,10 +20,10 @@ const COLUMNS: readonly Column<DrawRow>[] = [
   { key: 'number', head: titles.draw, cell: ({ id, number }) => <Link to={id}>{strings.name(number)}</Link> },
   { key: 'state', head: titles.state, cell: ({ state }) => <DrawTag state={state} /> },
   { key: 'through', head: titles.through, cell: ({ throughOn }) => writtenDate(throughOn) },
-  { key: 'due', head: titles.due, right: true, cell: ({ dueCents }) => <Money cents={dueCents} /> },
+  { key: 'due', head: titles.due, right: true, cell: (row) => <Figure steps={rowSteps(row).due} label={`${strings.name(row.number)}, ${titles.due}`}><Money cents={row.dueCents} /></Figure> },
   { key: 'homeowner', head: titles.homeowner, right: true, cell: ({ homeownerCents }) => <Money cents={homeownerCents} /> },
   { key: 'loan', head: titles.loan, right: true, cell: ({ loanCents }) => <Money cents={loanCents} /> },
-  { key: 'open', head: titles.open, right: true, cell: ({ openHomeownerCents, openLoanCents }) => <Money cents={sum([openHomeownerCents, openLoanCents])} /> },
+  { key: 'open', head: titles.open, right: true, cell: (row) => <Figure steps={rowSteps(row).open} label={`${strings.name(row.number)}, ${titles.open}`}><Money cents={sum([row.openHomeownerCents, row.openLoanCents])} /></Figure> },
   { key: 'dueOn', head: titles.dueOn, cell: ({ dueOn }) => (dueOn === null ? '–' : writtenDate(dueOn)) },
 ];
 

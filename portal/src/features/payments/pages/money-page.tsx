@@ -1,4 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
+import { rowSteps } from '@tallypole/shared/draw';
 import { sum } from '@tallypole/shared/money';
 import type { DrawRow } from '@tallypole/shared/schemas/draws';
 import type { Job } from '@tallypole/shared/schemas/jobs';
@@ -91,8 +92,8 @@ const { columns: titles } = words;
 const COLUMNS: readonly Column<DrawRow>[] = [
   { key: 'number', head: titles.draw, cell: ({ id, number }) => <Link to={`../draws/${id}`} relative="path">{`Draw ${number}`}</Link> },
   { key: 'state', head: titles.state, cell: ({ state }) => <DrawTag state={state} /> },
-  { key: 'due', head: titles.due, right: true, cell: ({ dueCents }) => <Money cents={dueCents} /> },
-  { key: 'paid', head: titles.paid, right: true, cell: ({ paidHomeownerCents, paidLoanCents }) => <Money cents={sum([paidHomeownerCents, paidLoanCents])} /> },
-  { key: 'open', head: titles.open, right: true, cell: ({ openHomeownerCents, openLoanCents }) => <Money cents={sum([openHomeownerCents, openLoanCents])} /> },
+  { key: 'due', head: titles.due, right: true, cell: (row) => <Figure steps={rowSteps(row).due} label={`Draw ${row.number}, ${titles.due}`}><Money cents={row.dueCents} /></Figure> },
+  { key: 'paid', head: titles.paid, right: true, cell: (row) => <Figure steps={rowSteps(row).paid} label={`Draw ${row.number}, ${titles.paid}`}><Money cents={sum([row.paidHomeownerCents, row.paidLoanCents])} /></Figure> },
+  { key: 'open', head: titles.open, right: true, cell: (row) => <Figure steps={rowSteps(row).open} label={`Draw ${row.number}, ${titles.open}`}><Money cents={sum([row.openHomeownerCents, row.openLoanCents])} /></Figure> },
   { key: 'dueOn', head: titles.dueOn, cell: ({ dueOn }) => (dueOn === null ? '–' : writtenDate(dueOn)) },
 ];
