@@ -13,6 +13,6 @@ export class RecordPagesRepository {
 const PART = /* sql */ `
   select json_build_object('chain', h.chain, 'head', json_build_object('seq', h.seq, 'hash', h.hash),
     'entries', (select coalesce(json_agg(json_build_object('seq', e.seq, 'text', e.text, 'hash', e.hash, 'byName', e.name) order by e.seq), '[]') from (
-      select r.seq, r.text, r.hash, p.name from record_entry r left join person p on p.id = (r.data->>'by')::uuid
+      select r.seq, r.text, r.hash, coalesce(p.name, case when p.system_of is not null then 'Tallypole' end) as name from record_entry r left join person p on p.id = (r.data->>'by')::uuid
       where r.job_id = h.job_id and r.chain = h.chain and r.seq > $3 order by r.seq limit $4) e)) as part
   from record_head h where h.job_id = $1 and h.chain = $2`;

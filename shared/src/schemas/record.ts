@@ -23,7 +23,7 @@ export const RecordPart = z.object({
       /** The exact canonical text that was hashed. */
       text: z.string(),
       hash: z.string(),
-      /** Whoever acted; null where the name was erased. It stands beside the text, not in it. */
+      /** Whoever acted, Tallypole where it acted by itself; null where the name was erased. It stands beside the text, not in it. */
       byName: z.string().nullable(),
     }),
   ),

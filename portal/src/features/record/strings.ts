@@ -2,9 +2,9 @@
 export const strings = {
   title: 'Record',
   explain: 'Every act that matters on this job, each entry chained to the one before it by its hash. Nothing is changed or taken out afterwards, also not by us.',
+  which: 'Which part',
   chains: { shared: 'What everybody on the job sees', firm: 'What the firm keeps to itself' },
   check: 'Check the record',
-  checking: 'Checking …',
   checkExplain: 'Your browser computes every hash anew from the entries themselves.',
   holds: (entries: number, hash: string) => `All ${entries} entries hold. The last hash is ${hash}.`,
   save: 'Save it as a file',

@@ -32,10 +32,10 @@ function Months({ ahead }: { ahead: Ahead }) {
   const sum = (key: 'homeownerCents' | 'loanCents' | 'notFundedCents' | 'runningCents', head: string): Column<Month> => ({ key, head, right: true, cell: (month) => <Money cents={month[key]} /> });
   const columns: Column<Month>[] = [
     { key: 'month', head: words.month, cell: ({ month }) => writtenMonth(month) },
+    { key: 'total', head: words.total, right: true, cell: ({ totalCents, steps, month }) => <Figure steps={steps} label={writtenMonth(month)}><Money cents={totalCents} /></Figure> },
     sum('homeownerCents', words.homeowner),
     ...(has(({ loanCents }) => loanCents) ? [sum('loanCents', words.loan)] : []),
     ...(has(({ notFundedCents }) => notFundedCents) ? [sum('notFundedCents', words.notFunded)] : []),
-    { key: 'total', head: words.total, right: true, cell: ({ totalCents, steps, month }) => <Figure steps={steps} label={writtenMonth(month)}><Money cents={totalCents} /></Figure> },
     sum('runningCents', words.running),
     ...(has(({ issuedCents }) => issuedCents) ? [{ key: 'issued', head: words.issued, right: true, cell: ({ issuedCents }: Month) => (issuedCents === 0 ? '–' : formatChange(issuedCents)) }] : []),
   ];

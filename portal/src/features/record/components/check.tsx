@@ -4,6 +4,7 @@ import { useState } from 'react';
 import { Note } from '../../../ui/page.tsx';
 import type { WholeRecord } from '../api/record.ts';
 import { strings } from '../strings.ts';
+import { Act } from './act.tsx';
 
 /** Computes the chain anew, here, from what was sent. */
 export function Check({ record }: { record: WholeRecord }) {
@@ -16,13 +17,12 @@ export function Check({ record }: { record: WholeRecord }) {
   };
   return (
     <div>
-      <p>
+      <Act explain={strings.checkExplain}>
         <Button loading={busy} onClick={() => void check()}>
           {strings.check}
-        </Button>{' '}
-        <span className="quiet">{strings.checkExplain}</span>
-      </p>
-      <div role="status" style={{ overflowWrap: 'anywhere' }}>
+        </Button>
+      </Act>
+      <div role="status" style={{ overflowWrap: 'anywhere', marginBottom: 16 }}>
         {verdict === null ? null : verdict.holds ? <Note>{strings.holds(verdict.head.seq, verdict.head.hash)}</Note> : <Note>{verdict.sentence}</Note>}
       </div>
     </div>

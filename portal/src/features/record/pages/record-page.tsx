@@ -1,11 +1,12 @@
-import { Button, SegmentedControl } from '@mantine/core';
+import { Button, NativeSelect } from '@mantine/core';
 import { useQuery } from '@tanstack/react-query';
 import { firmRoles } from '@tallypole/shared/schemas/roles';
-import type { RecordChain } from '@tallypole/shared/schemas/record';
+import { recordChains, type RecordChain } from '@tallypole/shared/schemas/record';
 import { useState } from 'react';
 import { useJob } from '../../../lib/job.ts';
 import { FailureState, LoadingState, PageHead } from '../../../ui/page.tsx';
 import { recordQuery } from '../api/record.ts';
+import { Act } from '../components/act.tsx';
 import { Check } from '../components/check.tsx';
 import { EntryTable } from '../components/entry-table.tsx';
 import { saveRecord } from '../save-record.ts';
@@ -23,12 +24,13 @@ export function Component() {
         <p className="quiet">{strings.explain}</p>
       </PageHead>
       {ofFirm ? (
-        <SegmentedControl
-          aria-label={strings.title}
+        <NativeSelect
+          label={strings.which}
           value={chain}
-          onChange={(value) => setChain(value)}
-          data={(['shared', 'firm'] as const).map((value) => ({ value, label: strings.chains[value] }))}
-          mb={16}
+          onChange={({ currentTarget }) => setChain(currentTarget.value === 'firm' ? 'firm' : 'shared')}
+          data={recordChains.map((value) => ({ value, label: strings.chains[value] }))}
+          maw={360}
+          mb={20}
         />
       ) : null}
       {error && !data ? <FailureState error={error} onRetry={() => void refetch()} /> : null}
@@ -37,12 +39,11 @@ export function Component() {
       {data && data.entries.length > 0 ? (
         <>
           <Check key={chain} record={data} />
-          <p style={{ margin: '8px 0 24px' }}>
+          <Act explain={strings.saveExplain}>
             <Button variant="outline" onClick={() => saveRecord(job.name, chain, data)}>
               {strings.save}
-            </Button>{' '}
-            <span className="quiet">{strings.saveExplain}</span>
-          </p>
+            </Button>
+          </Act>
           <EntryTable entries={data.entries} timeZone={job.timeZone} />
         </>
       ) : null}
