@@ -42,7 +42,8 @@ const QUEUE = /* sql */ `
     'photos', (select count(*) from draw_photo x where x.draw_id = d.id),
     'given', (select count(*) from draw_approval a where a.draw_id = d.id and a.superseded_at is null),
     'homeowners', (select count(*) from job_member h where h.job_id = j.id and h.role = 'homeowner' and h.ended_at is null),
-    'invited', app.homeowners_awaited(j.id), 'sign', j.homeowners_sign,
+    'invited', coalesce(aw.awaited, 0), 'sign', j.homeowners_sign,
     'conditions', coalesce((select r.conditions from lender_review r where r.draw_id = d.id and r.step = 'allowed' and r.at >= d.submitted_at order by r.at desc, r.id desc limit 1), ''))
     order by d.submitted_at), '[]') as rows
-  from waiting d join job j on j.id = d.job_id join firm f on f.id = j.firm_id left join work w on w.draw_id = d.id`;
+  from waiting d join job j on j.id = d.job_id join firm f on f.id = j.firm_id left join work w on w.draw_id = d.id
+    left join app.homeowners_awaited_each(array(select job_id from waiting)) aw on aw.job_id = j.id`;
