@@ -308,6 +308,16 @@ describe('a first job, from contract to paid draw', () => {
     await ida.press('Check the record');
     await ida.sees(/^All \d+ entries hold\. The last hash is [0-9a-f]{64}\.$/);
     expect([await ida.axe(), await ida.overflows()]).toEqual([[], false]);
+    // the signed paper printed where the record stood; another hash is found
+    const [printed] = await house.sql<{ seq: string; hash: string }>(`select seq::text, hash from record_entry where chain = 'shared' and data->>'act' = 'change.signed' order by record_entry.seq desc limit 1`);
+    await ida.page.getByText('Compare with a paper').click();
+    await ida.fill('Entry printed there', printed?.seq ?? '');
+    await ida.fill('Hash printed there', 'f'.repeat(64));
+    await ida.press('Check the record');
+    await ida.sees(/is not the one that was printed in the paper/);
+    await ida.fill('Hash printed there', printed?.hash.replace(/(.{16})/g, '$1 ') ?? '');
+    await ida.press('Check the record');
+    await ida.sees(/It is the record that the paper names\.$/);
     clean();
   });
 

@@ -1,25 +1,9 @@
-import type { Figure, Step } from '@tallypole/shared/arithmetic';
-import { formatMoney, formatRate } from '@tallypole/shared/money';
+import type { Step } from '@tallypole/shared/arithmetic';
+import { formatFigure } from '@tallypole/shared/money';
 import type { Content, TableCell } from 'pdfmake/interfaces.js';
 import { writtenBusinessDate } from '../common/written-date.ts';
 
 const INDENT = 14;
-
-/** A figure of any kind as a paper prints it. */
-function printed(figure: Figure): string {
-  switch (figure.kind) {
-    case 'money':
-      return formatMoney(figure.cents);
-    case 'rate':
-      return formatRate(figure.basisPoints);
-    case 'quantity':
-      return `${figure.value} ${figure.unit}`;
-    case 'date':
-      return writtenBusinessDate(figure.date);
-    case 'text':
-      return figure.text;
-  }
-}
 
 /** A computation down to its given figures, as a paper prints it: each step with its rule, what it follows from indented below it. */
 export function printedArithmetic(steps: readonly Step[]): Content {
@@ -33,6 +17,6 @@ function rowsOf(step: Step, level: number): TableCell[][] {
   const given = step.rule === 'given';
   const rule = given ? [] : [{ text: `${step.rule}${step.exact === undefined ? '' : `; exactly ${step.exact} before rounding`}`, style: 'small' }];
   const label: TableCell = { stack: [{ text: step.label, style: given ? 'quiet' : '' }, ...rule], margin: [level * INDENT, level === 0 ? 6 : 0, 0, 0] };
-  const result: TableCell = { text: printed(step.result), alignment: 'right', noWrap: true, style: given ? 'quiet' : '', margin: [0, level === 0 ? 6 : 0, 0, 0] };
+  const result: TableCell = { text: formatFigure(step.result, (date) => writtenBusinessDate(date)), alignment: 'right', noWrap: true, style: given ? 'quiet' : '', margin: [0, level === 0 ? 6 : 0, 0, 0] };
   return [[label, result], ...step.inputs.flatMap((input) => rowsOf(input, level + 1))];
 }

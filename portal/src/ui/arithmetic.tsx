@@ -1,25 +1,9 @@
-import type { Figure as FigureValue, Origin, Step } from '@tallypole/shared/arithmetic';
-import { formatMoney, formatRate } from '@tallypole/shared/money';
+import type { Origin, Step } from '@tallypole/shared/arithmetic';
+import { formatFigure } from '@tallypole/shared/money';
 import { Link, useParams } from 'react-router-dom';
 import { writtenDate } from '../lib/dates.ts';
 import { originPath } from '../lib/origin-path.ts';
 import classes from './figure.module.css';
-
-/** A figure of any kind as text. */
-function printFigure(figure: FigureValue): string {
-  switch (figure.kind) {
-    case 'money':
-      return formatMoney(figure.cents);
-    case 'rate':
-      return formatRate(figure.basisPoints);
-    case 'quantity':
-      return `${figure.value} ${figure.unit}`;
-    case 'date':
-      return writtenDate(figure.date);
-    case 'text':
-      return figure.text;
-  }
-}
 
 /** The steps of a computation down to the given figures; deeper levels open one by one. */
 export default function Arithmetic({ step }: { step: Step }) {
@@ -37,7 +21,7 @@ function StepItem({ step, open = false }: { step: Step; open?: boolean }) {
         {step.label}
         {step.origin ? <From origin={step.origin} of={step.label} /> : null}
       </span>
-      <span className="number">{printFigure(step.result)}</span>
+      <span className="number">{formatFigure(step.result, (date) => writtenDate(date))}</span>
     </span>
   );
   const rule = step.rule === 'given' ? null : (

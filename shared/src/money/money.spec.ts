@@ -2,7 +2,7 @@ import { Decimal } from 'decimal.js';
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { InvalidInput } from '../arithmetic/index.ts';
-import { cents, divideRounded, extend, extendExact, formatAmount, formatChange, formatMoney, formatRate, minus, parseMoney, parseRate, percentExact, percentOf, split, sum } from './index.ts';
+import { cents, divideRounded, extend, extendExact, formatAmount, formatChange, formatFigure, formatMoney, formatRate, minus, parseMoney, parseRate, percentExact, percentOf, split, sum } from './index.ts';
 
 const amount = fc.integer({ min: -1_000_000_000_00, max: 1_000_000_000_00 });
 
@@ -83,4 +83,9 @@ describe('bad money', () => {
   ];
   it.each(fails)('refuses %s', (_, run) => expect(run).toThrow(InvalidInput));
   it('has no negative zero', () => expect(Object.is(cents(-0), 0)).toBe(true));
+});
+
+it('prints figures of every kind', () => {
+  const printed = [{ kind: 'money', cents: -123_456 }, { kind: 'rate', basisPoints: 725 }, { kind: 'quantity', value: '28', unit: 'ea' }, { kind: 'date', date: '2027-03-14' }, { kind: 'text', text: 'as drawn' }] as const;
+  expect(printed.map((figure) => formatFigure(figure, (date) => date.slice(0, 4)))).toEqual(['−$1,234.56', '7.25 %', '28 ea', '2027', 'as drawn']);
 });
