@@ -15,6 +15,7 @@ export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
     { path: 'milestones/:milestoneId', lazy: () => import('../features/milestones/pages/milestone-page.tsx') },
     { path: 'changes', lazy: () => import('../features/changes/pages/changes-page.tsx') },
     { path: 'changes/new', lazy: () => import('../features/changes/pages/new-change-page.tsx') },
+    { path: 'takeoff', lazy: () => import('../features/takeoff/pages/takeoff-page.tsx') },
     { path: 'changes/:changeId', lazy: () => import('../features/changes/pages/change-page.tsx') },
     { path: 'changes/:changeId/edit', lazy: () => import('../features/changes/pages/edit-change-page.tsx') },
     { path: 'changes/:changeId/revise', lazy: () => import('../features/changes/pages/edit-change-page.tsx') },
