@@ -15,21 +15,26 @@ export interface SpanInput {
   deflectionLimit: number;
 }
 
+/** Nearer than this to half an inch, a span is a tie: binary arithmetic doesn't tell them apart. */
+const TIE = 1e-6;
+
 export const floorLoads = { liveLoad: 40, deadLoad: 10, deflectionLimit: 360 } as const;
 
 export interface ScreenedSpan {
   /** Inches, before rounding. */
   bendingInches: number;
   deflectionInches: number;
-  /** To the nearest inch, as tables print it. */
+  /** To the nearest inch, as tables print it; an exact half of an inch, which they print either way, goes down. */
   spanInches: number;
+  /** Whether the span lies at exactly half an inch. */
+  tie: boolean;
   governs: 'bending' | 'deflection';
   steps: Step;
 }
 
 /**
  * Clear span of a sawn joist: the lesser of √(8 F'b S ÷ w) under all load and ∛(384 E I ÷ (5 × limit × w live)), with F'b = Fb × size
- * factor × 1.15, to the nearest inch. A screen for the price, never a design. Throws InvalidInput.
+ * factor × 1.15, to the nearest inch, an exact half down. A screen for the price, never a design. Throws InvalidInput.
  * Source: the residential code's method for its span tables; exact halves of an inch are printed either way.
  */
 export function screenedSpan(input: SpanInput): ScreenedSpan {
@@ -45,13 +50,15 @@ export function screenedSpan(input: SpanInput): ScreenedSpan {
   const bendingInches = Math.sqrt((8 * allowed * sectionModulus) / along(input.liveLoad + input.deadLoad));
   const deflectionInches = Math.cbrt((384 * elasticity[grade] * momentOfInertia) / (5 * deflectionLimit * along(input.liveLoad)));
   const governs = bendingInches <= deflectionInches ? 'bending' : 'deflection';
-  const spanInches = Math.round(Math.min(bendingInches, deflectionInches));
-  const steps = step('Clear span of the screen', 'the lesser of bending and deflection, to the nearest inch', quantity(spanInches, 'in'), [
+  const exact = Math.min(bendingInches, deflectionInches);
+  const tie = Math.abs(exact - Math.floor(exact) - 0.5) < TIE;
+  const spanInches = tie ? Math.floor(exact) : Math.round(exact);
+  const steps = step('Clear span of the screen', `the lesser of bending and deflection, ${tie ? 'an exact half of an inch, rounded down: tables print it either way' : 'to the nearest inch'}`, quantity(spanInches, 'in'), [
     step('By bending', '√(8 × bending × section modulus ÷ load)', quantity(bendingInches.toFixed(2), 'in'), [given('Bending, with its factors', quantity(Math.round(allowed), 'psi')), given('Section modulus', quantity(sectionModulus.toFixed(3), 'in³')), given('Load', quantity(input.liveLoad + input.deadLoad, 'psf'))]),
     step('By deflection', `∛(384 × stiffness ÷ (5 × ${deflectionLimit} × live load))`, quantity(deflectionInches.toFixed(2), 'in'), [given('Modulus of elasticity', quantity(elasticity[grade], 'psi')), given('Moment of inertia', quantity(momentOfInertia.toFixed(2), 'in⁴')), given('Live load', quantity(input.liveLoad, 'psf'))]),
     given('Joists', text(`${species} ${grade}, ${size}, ${input.spacing} in on center`)),
-  ]);
-  return { bendingInches, deflectionInches, spanInches, governs, steps };
+  ], exact.toFixed(2));
+  return { bendingInches, deflectionInches, spanInches, tie, governs, steps };
 }
 
 function check({ species, grade, size, spacing, liveLoad, deadLoad, deflectionLimit }: SpanInput): void {
@@ -72,6 +79,8 @@ export interface Screening {
   /** `silent` says nothing about whether it may be built: a screen can stop, it never clears. */
   verdict: 'beyond_the_screen' | 'silent' | 'not_screened';
   span: ScreenedSpan | null;
+  /** What was compared, in words. */
+  steps: Step;
   caution: string;
 }
 
@@ -80,7 +89,10 @@ export const SPAN_CAUTION = 'Plans, the designer of record and the local code de
 /** Compares a proposed clear span in inches with the screen. Throws InvalidInput. */
 export function screenSpan(member: Member, clearSpanInches: number): Screening {
   must(Number.isFinite(clearSpanInches) && clearSpanInches > 0 && clearSpanInches <= 1_200, 'clearSpan', clearSpanInches, 'must be more than 0 and at most 100 ft');
-  if (member.kind !== 'sawn_joist') return { verdict: 'not_screened', span: null, caution: SPAN_CAUTION };
+  const proposed = given('Proposed clear span', quantity(clearSpanInches, 'in'));
+  if (member.kind !== 'sawn_joist') return { verdict: 'not_screened', span: null, steps: step('Span screen', 'only sawn joists under loads spread evenly are screened', text('Not screened'), [proposed]), caution: SPAN_CAUTION };
   const span = screenedSpan(member.input);
-  return { verdict: clearSpanInches > span.spanInches ? 'beyond_the_screen' : 'silent', span, caution: SPAN_CAUTION };
+  const beyond = clearSpanInches > span.spanInches;
+  const steps = step('Span screen', 'a proposed clear span longer than the screen\'s own stops; any other clears nothing', text(beyond ? 'Beyond the screen' : 'Within the screen, which does not clear it'), [proposed, span.steps]);
+  return { verdict: beyond ? 'beyond_the_screen' : 'silent', span, steps, caution: SPAN_CAUTION };
 }

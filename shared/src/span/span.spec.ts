@@ -1,9 +1,10 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
+import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { InvalidInput } from '../arithmetic/index.ts';
 import { parseLength } from '../takeoff/index.ts';
-import { SPAN_CAUTION, floorLoads, screenSpan, screenedSpan, type Grade, type SpanInput, type Species } from './index.ts';
+import { SPAN_CAUTION, floorLoads, screenSpan, screenedSpan, type Grade, type Member, type SpanInput, type Species } from './index.ts';
 
 interface Cell {
   spacing: number;
@@ -47,6 +48,27 @@ describe('the screen', () => {
     for (const { caution } of [screenSpan({ kind: 'sawn_joist', input }, 100), screenSpan({ kind: 'truss' }, 100)]) expect(caution).toBe(SPAN_CAUTION);
   });
   it.each(['i_joist', 'truss', 'steel', 'point_load', 'cantilever', 'other'] as const)('does not screen: %s', (kind) => expect(screenSpan({ kind }, 100)).toMatchObject({ verdict: 'not_screened', span: null }));
+  it('says a tie, and takes the lower inch: the residential code prints one of these up and one down', () => {
+    // 2018 IRC, table R802.5.1(2), Southern pine SS at 19.2 in: 217 1/2 in is printed 18-2, 277 1/2 in is printed 23-1
+    const pine = (size: SpanInput['size']): SpanInput => ({ species: 'Southern pine', grade: 'SS', size, spacing: '19.2', ...attic });
+    expect(screenedSpan(pine('2x8'))).toMatchObject({ tie: true, spanInches: 217 });
+    expect(screenedSpan(pine('2x10'))).toMatchObject({ tie: true, spanInches: Number(parseLength('23-1')) });
+    expect(screenSpan({ kind: 'sawn_joist', input: pine('2x10') }, 277.5).verdict).toBe('beyond_the_screen');
+    expect(screenedSpan(input).tie).toBe(false);
+  });
+  it('shows what it compared, and the span before it was rounded', () => {
+    const { steps, span } = screenSpan({ kind: 'sawn_joist', input }, 186);
+    expect(steps).toMatchObject({ result: { text: 'Beyond the screen' }, inputs: [{ result: { value: '186', unit: 'in' } }, { result: { value: '185', unit: 'in' } }] });
+    expect(Math.round(Number(span?.steps.exact))).toBe(185);
+    expect(screenSpan({ kind: 'truss' }, 186).steps.result).toEqual({ kind: 'text', text: 'Not screened' });
+  });
+  it('never says in any word that a member is allowed', () => {
+    fc.assert(fc.property(fc.integer({ min: 12, max: 1_200 }), fc.constantFrom<Member>({ kind: 'sawn_joist', input }, { kind: 'truss' }, { kind: 'point_load' }), (clearSpan, member) => {
+      const { verdict, steps, caution } = screenSpan(member, clearSpan);
+      expect(['beyond_the_screen', 'silent', 'not_screened']).toContain(verdict);
+      expect(JSON.stringify([steps, caution])).not.toMatch(/\b(allowed|approved|complies|adequate|passes|safe|OK)\b/i);
+    }));
+  });
   it('says which of bending and deflection governs', () => {
     const heavy = screenedSpan({ ...input, deadLoad: 60 });
     expect(heavy.governs).toBe('bending');

@@ -1,6 +1,6 @@
 import type { FloorGeometry } from './floor-types.ts';
 import { inchesText } from './length.ts';
-import { dressedSizes } from './lumber.ts';
+import { checkedSize, dressedSizes } from './lumber.ts';
 import { tenThousandths } from '../money/index.ts';
 
 export const depthTopics = ['hangers', 'rim', 'blocking', 'bearing', 'stair_rise', 'wall_and_siding_height', 'beam_pockets', 'duct_and_pipe_holes'] as const;
@@ -13,10 +13,11 @@ export interface DepthPrompt {
 
 /**
  * What a joist of another depth moves beside itself, as questions; their answers are kept with the change. Nothing where the depth stays.
- * Common practice, no source.
+ * Throws InvalidInput for an unknown size. Common practice, no source.
  */
 export function depthPrompts(asDrawn: FloorGeometry, asProposed: FloorGeometry): DepthPrompt[] {
-  const moved = tenThousandths(dressedSizes[asProposed.joists.size].width) - tenThousandths(dressedSizes[asDrawn.joists.size].width);
+  const depth = ({ joists }: FloorGeometry, side: string) => tenThousandths(dressedSizes[checkedSize(joists.size, `${side}.joists.size`)].width);
+  const moved = depth(asProposed, 'asProposed') - depth(asDrawn, 'asDrawn');
   if (moved === 0n) return [];
   const by = `${inchesText(moved < 0n ? -moved : moved)} in ${moved > 0n ? 'deeper' : 'shallower'}`;
   const questions: Record<DepthTopic, string> = {

@@ -13,7 +13,7 @@ export interface FloorGeometry {
     spacing: Inches;
     /** Bearing at each end. */
     bearing: Inches;
-    /** Beyond the girder, where joists of two bays lap. */
+    /** How far joists of two bays lap over the girder. */
     lap: Inches;
     /** Doubled joists and trimmers named on the plan, over all bays. */
     extras: number;
@@ -24,7 +24,8 @@ export interface FloorGeometry {
   };
   /** Between the bays; null where there is one bay. */
   girder: null | { size: LumberSize; plies: number; postSpacing: Inches; jointsTogether: number; nailRows: number; nailSpacing: Inches; stock: readonly number[] };
-  sill: null | { pieces: readonly Inches[]; maxSpacing: Inches; endDistance: Inches; boltDiameter: Inches };
+  /** The plate in its pieces, and what bolts it; null where it isn't part of the worksheet. */
+  sill: null | { size: LumberSize; stock: readonly number[]; pieces: readonly Inches[]; maxSpacing: Inches; endDistance: Inches; boltDiameter: Inches };
   sheathing: {
     faceWidth: Inches;
     sheetLength: Inches;

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { InvalidInput } from '../arithmetic/index.ts';
 import { priceChange } from '../pricing/index.ts';
 import { commonStock, concreteTakeoff, depthPrompts, differenceLines, floorTakeoff, framingPlan, takeoffDifference, type FloorGeometry } from './index.ts';
 
@@ -8,7 +9,7 @@ const floor: FloorGeometry = {
   clearSpans: ['160', '150'],
   joists: { size: '2x10', spacing: '16', bearing: '1.5', lap: '3', extras: 4, blockingRows: 1, hungEnds: 0, stock: commonStock },
   girder: { size: '2x12', plies: 3, postSpacing: '96', jointsTogether: 2, nailRows: 2, nailSpacing: '12', stock: commonStock },
-  sill: { pieces: ['192', '192', '48'], maxSpacing: '72', endDistance: '12', boltDiameter: '0.5' },
+  sill: { size: '2x6', stock: commonStock, pieces: ['192', '192', '48'], maxSpacing: '72', endDistance: '12', boltDiameter: '0.5' },
   sheathing: { faceWidth: '47.5', sheetLength: '96', wasteRate: 500, edgeSpacing: '6', fieldSpacing: '12', fastenersPerBox: 1_000, fastenerWasteRate: 1_000, adhesive: { ounces: 28, beadDiameter: '0.25', wasteRate: 1_000 } },
 };
 const deeper: FloorGeometry = { ...floor, joists: { ...floor.joists, size: '2x12' } };
@@ -26,6 +27,28 @@ describe('the take-off of a floor', () => {
     expect(() => floorTakeoff({ ...floor, clearSpans: ['160'] })).toThrow(/girder/);
     expect(() => floorTakeoff({ ...floor, girder: null })).toThrow(/girder/);
     expect(() => floorTakeoff({ ...floor, clearSpans: ['400', '160'] })).toThrow(/clearSpan/);
+  });
+  it('buys the plates with their bolts, each piece in its stock length', () => expect(bought(floor)).toMatchObject({ 'sill-2x6-16': '2', 'sill-2x6-8': '1' }));
+  it('makes joists lap over a wide girder: 162 in are 14 ft over three plies, and 16 ft over five', () => {
+    // by hand: 162 + 3 + 3 = 168 in; over five plies of 1 1/2 in each joist goes (7 1/2 + 3) ÷ 2 past the girder's face: 162 + 1 1/2 + 5 1/4 = 168 3/4 in
+    const wide = (plies: number) => ({ ...floor, clearSpans: ['162', '162'], joists: { ...floor.joists, extras: 0 }, girder: floor.girder && { ...floor.girder, plies, jointsTogether: 6 } });
+    expect(bought(wide(3))).toHaveProperty(['joists-2x10-14'], '56');
+    expect(bought(wide(5))).toHaveProperty(['joists-2x10-16'], '56');
+  });
+  it('glues each joist, the extras of the longer bay too', () => {
+    // by hand: 28 × (160 + 150) in and 6 grooves of 432 in are 939 1/3 ft; an extra joist adds 160 in
+    const bead = (extras: number) => floorTakeoff({ ...floor, joists: { ...floor.joists, extras } }).find(({ key }) => key === 'adhesive')?.net;
+    expect([bead(0), bead(1), bead(3)]).toEqual(['939.3334', '952.6667', '979.3334']);
+  });
+  it('says what its net is in', () => {
+    const of = (wanted: string) => floorTakeoff(floor).find(({ key }) => key === wanted);
+    expect(of('rim-2x10-14')).toMatchObject({ net: '72', netUnit: 'ft', purchased: '6', unit: 'ea' });
+    expect(of('blocking-2x10-14')).toMatchObject({ net: '54', netUnit: 'ea', purchased: '5', unit: 'ea' });
+    expect(of('sheathing-fasteners')).toMatchObject({ netUnit: 'ea', unit: 'box' });
+    expect(of('adhesive')).toMatchObject({ netUnit: 'ft', unit: 'cartridge' });
+  });
+  it('opens each quantity to the same figure', () => {
+    for (const { key, purchased, steps } of floorTakeoff({ ...floor, joists: { ...floor.joists, hungEnds: 1 } })) expect([key, steps.result]).toMatchObject([key, { kind: 'quantity', value: purchased }]);
   });
   it('shows net, what is bought, and the waste it used', () => {
     for (const { purchased, steps, label, net } of floorTakeoff(floor)) {
@@ -82,4 +105,44 @@ it('the drawing has as many members as the take-off counts, all within its outli
 
 it('concrete is one item, ordered in quarter yards', () => {
   expect(concreteTakeoff([{ label: 'Footing', length: '360', width: '16', thickness: '8', count: 1 }], 500)).toMatchObject([{ key: 'concrete', unit: 'yd3', net: '0.9877', purchased: '1.25', wasteRate: 500 }]);
+});
+
+describe('a wrong floor is refused at its field', () => {
+  const joists = (wrong: object) => ({ ...floor, joists: { ...floor.joists, ...wrong } }) as FloorGeometry;
+  const girder = (wrong: object) => ({ ...floor, girder: { ...floor.girder, ...wrong } }) as FloorGeometry;
+  const sill = (wrong: object) => ({ ...floor, sill: { ...floor.sill, ...wrong } }) as FloorGeometry;
+  const sheathing = (wrong: object) => ({ ...floor, sheathing: { ...floor.sheathing, ...wrong } }) as FloorGeometry;
+  it.each<[string, string, FloorGeometry]>([
+    ['a run without length', 'run', { ...floor, run: '0' }],
+    ['three bays', 'clearSpans', { ...floor, clearSpans: ['100', '100', '100'] }],
+    ['a second span that is no length', 'clearSpans.1', { ...floor, clearSpans: ['160', 'x'] }],
+    ['a second span longer than any stock', 'clearSpans.1', { ...floor, clearSpans: ['160', '400'] }],
+    ['joists of an unknown size', 'joists.size', joists({ size: '3x3' })],
+    ['joists closer than they are thick', 'joists.spacing', joists({ spacing: '1.5' })],
+    ['no bearing', 'joists.bearing', joists({ bearing: '0' })],
+    ['extras below nothing', 'joists.extras', joists({ extras: -1 })],
+    ['half a row of blocking', 'joists.blockingRows', joists({ blockingRows: 0.5 })],
+    ['three hung ends', 'joists.hungEnds', joists({ hungEnds: 3 })],
+    ['joists without stock', 'joists.stock', joists({ stock: [] })],
+    ['a girder of an unknown size', 'girder.size', girder({ size: '9x9' })],
+    ['a girder of seven plies', 'girder.plies', girder({ plies: 7 })],
+    ['girder stock of half a foot', 'girder.stock', girder({ stock: [8.5] })],
+    ['girder stock that is no number', 'girder.stock', girder({ stock: [Number.NaN, 16] })],
+    ['a sill of an unknown size', 'sill.size', sill({ size: '1x1' })],
+    ['sill stock of nothing', 'sill.stock', sill({ stock: [0] })],
+    ['a plate piece longer than any stock', 'sill.pieces.1', sill({ pieces: ['96', '300'] })],
+    ['waste below nothing', 'sheathing.wasteRate', sheathing({ wasteRate: -1 })],
+    ['waste of fasteners below nothing', 'sheathing.fastenerWasteRate', sheathing({ fastenerWasteRate: -1 })],
+    ['boxes of no fastener', 'sheathing.fastenersPerBox', sheathing({ fastenersPerBox: 0 })],
+    ['waste of adhesive of half a basis point', 'sheathing.adhesive.wasteRate', sheathing({ adhesive: { ounces: 28, beadDiameter: '0.25', wasteRate: 0.5 } })],
+  ])('%s', (_, field, wrong) => expect(() => floorTakeoff(wrong)).toThrow(expect.objectContaining({ name: 'InvalidInput', field }) as InvalidInput));
+
+  it('the drawing and the questions refuse it too', () => {
+    expect(() => framingPlan(joists({ spacing: '0.001' }))).toThrow(expect.objectContaining({ field: 'joists.spacing' }) as InvalidInput);
+    expect(() => depthPrompts(floor, joists({ size: '3x3' }))).toThrow(expect.objectContaining({ field: 'asProposed.joists.size' }) as InvalidInput);
+  });
+  it('a key that comes twice cannot be compared', () => {
+    const items = floorTakeoff(floor);
+    expect(() => takeoffDifference(items, [...items, ...items.slice(0, 1)])).toThrow(expect.objectContaining({ field: `asProposed.${items.length}.key` }) as InvalidInput);
+  });
 });

@@ -1,9 +1,9 @@
-import { girderWidth, type FloorGeometry } from './floor-types.ts';
-import { floorDepth } from './floor-depth.ts';
-import { countOf, lengthOf } from './length.ts';
-import { dressedSizes } from './lumber.ts';
-import { ceilDivide } from './length.ts';
 import { tenThousandths } from '../money/index.ts';
+import { checkFloor } from './floor-check.ts';
+import { floorDepth } from './floor-depth.ts';
+import { girderWidth, type FloorGeometry } from './floor-types.ts';
+import { ceilDivide, countOf, lengthOf } from './length.ts';
+import { dressedSizes } from './lumber.ts';
 
 /** A rectangle of the plan, in inches from the outer corner; x along the run, y across it. For a drawing only. */
 export interface PlanRectangle {
@@ -29,6 +29,7 @@ const inches = (size: bigint): number => Number(size) / 10_000;
 
 /** The floor's frame to scale, from the same inputs as its take-off. Throws InvalidInput. */
 export function framingPlan(geometry: FloorGeometry): FramingPlan {
+  checkFloor(geometry);
   const { run, clearSpans, joists, girder } = geometry;
   const [width, height] = [inches(lengthOf(run, 'run')), inches(floorDepth(geometry))];
   const thickness = inches(tenThousandths(dressedSizes[joists.size].thickness));

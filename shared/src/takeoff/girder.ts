@@ -1,7 +1,7 @@
 import { given, must, quantity, step, type Step } from '../arithmetic/index.ts';
 import { wholeNumber } from './item.ts';
 import { ceilDivide, countOf, lengthOf, type Inches } from './length.ts';
-import { stockLength } from './lumber.ts';
+import { checkedStock, stockLength } from './lumber.ts';
 
 export interface GirderInput {
   /** Out to out of the girder. */
@@ -22,9 +22,9 @@ export interface Girder {
   /** Interior posts; the ends bear on the walls. */
   posts: number;
   /** Pieces by stock length in feet, longest first. */
-  pieces: { stockFeet: number; count: number }[];
+  pieces: { stockFeet: number; count: number; steps: Step }[];
   nails: number;
-  steps: { posts: Step; pieces: Step; nails: Step };
+  steps: { posts: Step; nails: Step };
 }
 
 /**
@@ -34,6 +34,7 @@ export interface Girder {
  */
 export function builtUpGirder(input: GirderInput): Girder {
   const run = lengthOf(input.run, 'girder.run');
+  checkedStock(input.stock, 'girder.stock');
   const plies = wholeNumber(input.plies, 'girder.plies', 1, 6);
   const together = wholeNumber(input.jointsTogether, 'girder.jointsTogether', 1, 6);
   const bays = countOf(ceilDivide(run, lengthOf(input.postSpacing, 'girder.postSpacing')));
@@ -45,17 +46,24 @@ export function builtUpGirder(input: GirderInput): Girder {
       counted.set(feet, (counted.get(feet) ?? 0) + 1);
     }
   }
-  const pieces = [...counted].map(([stockFeet, count]) => ({ stockFeet, count })).sort((a, b) => b.stockFeet - a.stockFeet);
+  const pieces = [...counted].sort(([a], [b]) => b - a).map(([stockFeet, count]) => ({
+    stockFeet,
+    count,
+    steps: step(`Girder pieces of ${stockFeet} ft`, 'each ply in pieces that end over posts, joints staggered; those that need this stock length', quantity(count, 'ea'), [
+      given('Plies', quantity(plies, 'ea')),
+      given('Run', quantity(input.run, 'in')),
+      given('Spaces between posts', quantity(bays, 'ea')),
+      given('Plies that may join over one post', quantity(together, 'ea')),
+    ]),
+  }));
   const alongRun = countOf(ceilDivide(run, lengthOf(input.nailSpacing, 'girder.nailSpacing'))) + 1;
   const nails = (plies - 1) * wholeNumber(input.nailRows, 'girder.nailRows', 1, 6) * alongRun;
-  const total = pieces.reduce((sum, { count }) => sum + count, 0);
   return {
     posts: bays - 1,
     pieces,
     nails,
     steps: {
       posts: step('Interior posts', 'run ÷ post spacing rounded up, less one', quantity(bays - 1, 'ea'), [given('Run', quantity(input.run, 'in')), given('Post spacing', quantity(input.postSpacing, 'in'))]),
-      pieces: step('Girder pieces', 'each ply in pieces that end over posts, joints staggered', quantity(total, 'ea'), pieces.map(({ stockFeet, count }) => given(`Of ${stockFeet} ft`, quantity(count, 'ea')))),
       nails: step('Nails', 'pairs of plies × rows × (run ÷ spacing rounded up, and one more)', quantity(nails, 'ea'), [given('Pairs of plies', quantity(plies - 1, 'ea')), given('Rows', quantity(input.nailRows, 'ea')), given('Along the run', quantity(alongRun, 'ea'))]),
     },
   };

@@ -9,8 +9,11 @@ export interface TakeoffItem {
   /** The same thing has the same key in every worksheet, so that two can be compared. */
   key: string;
   label: string;
+  /** What it is bought in. */
   unit: TakeoffUnit;
   net: Decimal;
+  /** What the net is in: feet of rim, or fasteners that are bought in boxes. */
+  netUnit: TakeoffUnit;
   purchased: Decimal;
   wasteRate: BasisPoints;
   steps: Step;
@@ -18,15 +21,15 @@ export interface TakeoffItem {
 
 /** A count that is bought as it is. */
 export function countItem(key: string, label: string, count: number, steps: Step, unit: TakeoffUnit = 'ea'): TakeoffItem {
-  return { key, label, unit, net: String(count), purchased: String(count), wasteRate: 0, steps };
+  return { key, label, unit, net: String(count), netUnit: unit, purchased: String(count), wasteRate: 0, steps };
 }
 
 /** A count with waste on it, bought in whole units of so many pieces: rounded up once. Throws InvalidInput. */
-export function boughtIn(net: number, wasteRate: BasisPoints, perUnit: number, unit: TakeoffUnit, net_: Step, label: string): { purchased: number; steps: Step } {
+export function boughtIn(net: number, wasteRate: BasisPoints, perUnit: number, unit: TakeoffUnit, netStep: Step, label: string): { purchased: number; steps: Step } {
   must(Number.isSafeInteger(perUnit) && perUnit > 0, 'perUnit', perUnit, 'must be a whole number of at least 1');
   const withWaste = BigInt(net) * BigInt(10_000 + basisPoints(wasteRate, 'wasteRate'));
   const purchased = Number(ceilDivide(withWaste, 10_000n * BigInt(perUnit)));
-  const inputs = [net_, given('Waste', rate(wasteRate)), ...(perUnit === 1 ? [] : [given('In one', quantity(perUnit, 'ea'))])];
+  const inputs = [netStep, given('Waste', rate(wasteRate)), ...(perUnit === 1 ? [] : [given('In one', quantity(perUnit, 'ea'))])];
   return { purchased, steps: step(label, 'net and its waste, rounded up to whole ones', quantity(purchased, unit), inputs) };
 }
 

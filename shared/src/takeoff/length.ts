@@ -33,16 +33,18 @@ export const ceilDivide = (a: bigint, b: bigint): bigint => (a + b - 1n) / b;
 /** A count as whole number; it came from lengths within bounds. */
 export const countOf = (value: bigint): number => Number(value);
 
-const FEET = /^(?:(\d{1,4})\s*(?:'|ft\.?|feet|-)\s*)?(?:(\d{1,5}(?:\.\d{1,4})?(?![\d/]))?(?:[\s-]*(\d{1,2})\/(\d{1,2}))?\s*(?:"|in\.?|inches)?)?$/i;
+// a dash before a fraction joins inches (5-1/2 is five and a half inches), any other dash stands between feet and inches
+const FEET = /^(?:(\d{1,4})\s*(?:'|ft\.?|feet|-(?!\s*\d{1,2}\/))\s*)?(?:(\d{1,5}(?:\.\d{1,4})?(?![\d/]))?(?:[\s-]*(\d{1,2})\/(\d{1,2}))?\s*(?:"|in\.?|inches)?)?$/i;
 
 /**
- * What people write for a length, as inches: 12' 6", 12-6, 12 ft 6 1/2 in, 150.5, 36', 3/4". A bare number is inches.
- * Fractions are halves to sixteenths. Throws InvalidInput.
+ * What people write for a length, as inches: 12' 6", 12-6, 12 ft 6 1/2 in, 5-1/2", 150.5, 36', 3/4". A bare number is inches.
+ * Fractions are halves to sixteenths; beside feet there are fewer than 12 inches. Throws InvalidInput.
  */
 export function parseLength(text: string, field = 'length'): Inches {
   const found = FEET.exec(text.trim().replaceAll('’', "'").replaceAll('′', "'").replaceAll('″', '"').replaceAll('”', '"'));
   const [, feet, whole, over, under] = found ?? [];
   must(feet !== undefined || whole !== undefined || over !== undefined, field, text, 'must be a length such as 12\' 6 1/2" or 150.5');
+  must(feet === undefined || tenThousandths(whole ?? '0', field) < 12n * SCALE, field, text, 'must have fewer than 12 inches beside its feet');
   const parts = under === undefined ? 0n : fraction(Number(over), Number(under), text, field);
   const size = BigInt(feet ?? 0) * 12n * SCALE + tenThousandths(whole ?? '0', field) + parts;
   must(size > 0n && size <= LONGEST, field, text, 'must be a length of more than 0 and at most 1,000 ft');

@@ -27,10 +27,21 @@ export function nominal(size: LumberSize): { thickness: number; width: number } 
 /** Lengths that lumber is commonly sold in, in feet: common practice, no source. */
 export const commonStock: readonly number[] = [8, 10, 12, 14, 16, 18, 20, 22, 24];
 
+/** A size that has its dressed sizes. Throws InvalidInput. */
+export function checkedSize(size: LumberSize, field: string): LumberSize {
+  must(lumberSizes.includes(size), field, size, `must be one of ${lumberSizes.join(', ')}`);
+  return size;
+}
+
+/** Stock lengths in feet. Throws InvalidInput. */
+export function checkedStock(stock: readonly number[], field: string): readonly number[] {
+  must(stock.length > 0 && stock.every((feet) => Number.isSafeInteger(feet) && feet > 0 && feet <= 60), field, stock, 'must be whole feet from 1 to 60');
+  return stock;
+}
+
 /** The next length that is sold, in feet, for a member of so many inches. Throws InvalidInput where none is long enough. */
 export function stockLength(needed: bigint, stock: readonly number[], field: string): number {
-  must(stock.length > 0 && stock.every((feet) => Number.isSafeInteger(feet) && feet > 0 && feet <= 60), 'stock', stock, 'must be whole feet from 1 to 60');
-  const found = [...stock].sort((a, b) => a - b).find((feet) => BigInt(feet) * 120_000n >= needed);
+  const found = [...checkedStock(stock, 'stock')].sort((a, b) => a - b).find((feet) => BigInt(feet) * 120_000n >= needed);
   must(found !== undefined, field, fixed(needed, 4), 'must not be longer than the longest stock length');
   return found;
 }

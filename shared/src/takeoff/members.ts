@@ -31,16 +31,16 @@ export interface MemberLengthInput {
   clearSpan: Inches;
   /** Bearing at both ends together. */
   bearings: Inches;
-  /** Beyond the girder's far face, where members lap. */
+  /** Beyond the bearing, where members of two bays lap over a girder. */
   lap: Inches;
   /** Feet. */
   stock: readonly number[];
 }
 
-/** Length of a member = clear span + bearings + lap, and the next stock length, in feet. Throws InvalidInput. */
-export function memberLength({ clearSpan, bearings, lap, stock }: MemberLengthInput): { length: Inches; stockFeet: number; steps: Step } {
-  const needed = lengthOf(clearSpan, 'clearSpan') + lengthOrNone(bearings, 'bearings') + lengthOrNone(lap, 'lap');
-  const stockFeet = stockLength(needed, stock, 'clearSpan');
+/** Length of a member = clear span + bearings + lap, and the next stock length, in feet. Throws InvalidInput; `field` names the span there. */
+export function memberLength({ clearSpan, bearings, lap, stock }: MemberLengthInput, field = 'clearSpan'): { length: Inches; stockFeet: number; steps: Step } {
+  const needed = lengthOf(clearSpan, field) + lengthOrNone(bearings, 'bearings') + lengthOrNone(lap, 'lap');
+  const stockFeet = stockLength(needed, stock, field);
   const length = inchesText(needed);
   const steps = step('Bought as', 'clear span + bearings + lap, in the next stock length', quantity(stockFeet, 'ft'), [
     given('Clear span', quantity(clearSpan, 'in')),
