@@ -1,5 +1,6 @@
 import { Injectable } from '@nestjs/common';
-import { minus } from '@tallypole/shared/money';
+import { seenOfBilled } from '@tallypole/shared/draw';
+import { minus, sum } from '@tallypole/shared/money';
 import type { Lending } from '@tallypole/shared/schemas/lending';
 import { UnitOfWork, type Actor } from '../common/unit-of-work.ts';
 import { blockerOf } from './blocker.ts';
@@ -19,7 +20,9 @@ export class LendingService {
 }
 
 function rowOf(facts: LendingFacts): Lending['items'][number] {
-  const { approved, given, homeowners, invited, sign, loanCents, sentCents, ...row } = facts;
+  const { approved, given, homeowners, invited, sign, loanCents, sentCents, lines, ...rest } = facts;
+  const seen = lines.map(([scheduledCents, workCents, seenRate]) => ({ scheduledCents, workCents, seenRate }));
+  const row = { ...rest, provenCents: seenOfBilled(seen), billedCents: sum(seen.map(({ workCents }) => workCents)) };
   const needed = sign === 'one' ? 1 : homeowners + invited;
   return { ...row, loanOpenCents: minus(loanCents, sentCents), approvals: { given: approved ? needed : given, needed }, blocker: blockerOf({ ...row, approved }) };
 }

@@ -20,3 +20,5 @@ export type {
 } from './types.ts';
 export { lineSteps, rowSteps } from './row-steps.ts';
 export type { LineFigures, RowFigures } from './row-steps.ts';
+export { seenOfBilled } from './seen.ts';
+export type { SeenLine } from './seen.ts';
