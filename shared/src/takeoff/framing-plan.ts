@@ -39,14 +39,13 @@ export function framingPlan(geometry: FloorGeometry): FramingPlan {
   const spans = clearSpans.map((span, i) => inches(lengthOf(span, `clearSpans.${i}`)));
   const girderAt = bearing + (spans[0] ?? 0);
   const beam = girder ? inches(girderWidth(girder.plies)) : 0;
-  // the last joist closes the run, whatever is left of the spacing
-  const across = Array.from({ length: perBay }, (_, i) => Math.min(i * spacing, width - thickness));
+  const across = Array.from({ length: perBay }, (_, i) => i * spacing);
   const bays = girder ? [{ y: 0, height: girderAt + beam }, { y: girderAt, height: height - girderAt }] : [{ y: 0, height }];
   const posts = girder ? countOf(ceilDivide(lengthOf(run, 'run'), lengthOf(girder.postSpacing, 'girder.postSpacing'))) - 1 : 0;
   return {
     width,
     height,
-    // joists of two bays lie beside each other over the girder
+    // joists of two bays lie beside each other over the girder; the last one closes the run, whatever is left of the spacing
     joists: bays.flatMap((bay, i) => across.map((x) => ({ x: Math.min(x + i * thickness, width - thickness), y: bay.y, width: thickness, height: bay.height }))),
     rims: [{ x: 0, y: 0, width, height: thickness }, { x: 0, y: height - thickness, width, height: thickness }],
     girder: girder ? { x: 0, y: girderAt, width, height: beam } : null,
