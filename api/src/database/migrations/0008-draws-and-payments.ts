@@ -370,15 +370,6 @@ create function app.homeowners_awaited(p_job uuid) returns integer language sql 
     and (j.id = any(app.my_jobs()) or j.firm_id = any(app.my_firms()))
 $$;
 
--- the same for many jobs at once: what the reader may reach is asked once
-create function app.homeowners_awaited_each(p_jobs uuid[]) returns table (job_id uuid, awaited integer) language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare jobs uuid[] := app.my_jobs(); firms uuid[] := app.my_firms();
-begin
-  return query select i.job_id, count(distinct i.email)::int from invitation i join job j on j.id = i.job_id
-    where i.job_id = any(p_jobs) and i.role = 'homeowner' and i.accepted_at is null and i.revoked_at is null and (j.id = any(jobs) or j.firm_id = any(firms))
-    group by i.job_id;
-end $$;
-
 -- whether the builder of a job can be paid through Stripe; the account itself stays the firm's
 create function app.takes_payments(p_job uuid) returns boolean language sql stable security definer set search_path = public, pg_temp as $$
   select exists (select 1 from job j join stripe_account a on a.firm_id = j.firm_id
@@ -400,9 +391,9 @@ create function app.stripe_firms() returns table (firm_id uuid) language sql sta
   select a.firm_id from stripe_account a where a.account is not null order by a.events_until
 $$;
 
-revoke all on function app.lowers_line, app.guard_draw, app.guard_void_draw, app.guard_draw_part, app.guard_payment, app.to_tell, app.homeowners_awaited, app.homeowners_awaited_each, app.takes_payments,
+revoke all on function app.lowers_line, app.guard_draw, app.guard_void_draw, app.guard_draw_part, app.guard_payment, app.to_tell, app.homeowners_awaited, app.takes_payments,
   app.store_stripe_event, app.stripe_firms from public;
-grant execute on function app.to_tell, app.homeowners_awaited, app.homeowners_awaited_each, app.takes_payments to app_read, app_write, app_worker;
+grant execute on function app.to_tell, app.homeowners_awaited, app.takes_payments to app_read, app_write, app_worker;
 grant execute on function app.store_stripe_event to app_write;
 grant execute on function app.stripe_firms to app_worker;
 `;
