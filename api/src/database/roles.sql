@@ -22,7 +22,9 @@
   select format('alter role %I set %s', name, setting)
   from (values ('app_read'), ('app_write'), ('app_worker')) as runtime (name),
        (values ('statement_timeout = ''10s'''), ('lock_timeout = ''3s'''),
-               ('idle_in_transaction_session_timeout = ''15s''')) as limits (setting)
+               ('idle_in_transaction_session_timeout = ''15s'''),
+               -- statements are short: compiling one would take longer than running it
+               ('jit = off')) as limits (setting)
   \gexec
   -- One page's figures agree, and no reading request can write.
   alter role app_read set default_transaction_read_only = on;
