@@ -44,7 +44,7 @@ export function pay(act, sessionId, choice) {
   const session = openSession(act, sessionId);
   const type = methodOf(choice.outcome);
   if (!session.payment_method_types.includes(type))
-    throw refused(`This session doesn't take ${type === 'card' ? 'cards' : 'bank debits'}.`);
+    throw refused(`This Checkout Session doesn't take ${type === 'card' ? 'cards' : 'bank debits'}.`);
   const who = { email: choice.email || session.customer_email, name: choice.name || null };
   const method = act.tx.put('payment_method', act.account, newPaymentMethod(act, type, who, last4[choice.outcome]));
   const intent = intentOf(act, session);
@@ -166,7 +166,7 @@ function openSession(act, sessionId) {
   const session = act.tx.find('checkout.session', sessionId, act.account);
   if (session?.status !== 'open' || session.expires_at <= act.now) {
     throw refused(
-      `This session can't be paid: it is ${session === undefined ? 'unknown' : session.status === 'open' ? 'expired' : session.status}.`,
+      `This Checkout Session can't be paid: it is ${session === undefined ? 'unknown' : session.status === 'open' ? 'expired' : session.status}.`,
     );
   }
   return session;
