@@ -7,30 +7,27 @@ import type { Change } from '@tallypole/shared/schemas/changes';
 import { changeAt, changeDraft, issueChange, startChange } from '../../api/test/support/change-builders.ts';
 import { join } from '../../api/test/support/builders.ts';
 import { lentJob, made, type LentJob } from '../../api/test/support/draw-builders.ts';
-import { House } from '../../api/test/support/house.ts';
+import type { House } from '../../api/test/support/house.ts';
 import { pdf } from '../../api/test/support/uploads.ts';
-import { desk, openBrowser, phone } from './support/browser.ts';
+import { desk, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+import { openStage, type Stage } from './support/stage.ts';
 
 const shots = process.env['SHOTS'];
 
 describe('what people answer to a change', () => {
+  let stage: Stage;
   let house: House;
   let url: string;
   let browser: Browser;
   let lent: LentJob;
 
   beforeAll(async () => {
-    house = await House.open({ PORTAL_DIST: path.join(import.meta.dirname, '../dist') });
-    ({ url } = await house.web());
-    await house.worker({ env: { PUBLIC_URL: url } });
-    browser = await openBrowser();
+    stage = await openStage();
+    ({ house, url, browser } = stage);
     lent = await lentJob(house, url);
   });
-  afterAll(async () => {
-    await browser.close();
-    await house.close();
-  });
+  afterAll(() => stage.close());
 
   const pageOf = (change: Change) => `/jobs/${changeAt(lent, change.id).split('/jobs/')[1] ?? ''}`;
   const agree = async (who: Someone, name: string) => {

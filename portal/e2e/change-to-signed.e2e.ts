@@ -3,10 +3,11 @@ import path from 'node:path';
 import { writeFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { lentJob, prove, type LentJob } from '../../api/test/support/draw-builders.ts';
-import { House } from '../../api/test/support/house.ts';
+import type { House } from '../../api/test/support/house.ts';
 import { pdf } from '../../api/test/support/uploads.ts';
-import { desk, openBrowser, phone } from './support/browser.ts';
+import { desk, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+import { openStage, type Stage } from './support/stage.ts';
 
 const shots = process.env['SHOTS'];
 const shoot = async (who: Someone, name: string): Promise<void> => {
@@ -14,23 +15,19 @@ const shoot = async (who: Someone, name: string): Promise<void> => {
 };
 
 describe('a change, from its price to the last signature', () => {
+  let stage: Stage;
   let house: House;
   let url: string;
   let browser: Browser;
   let lent: LentJob;
 
   beforeAll(async () => {
-    house = await House.open({ PORTAL_DIST: path.join(import.meta.dirname, '../dist') });
-    ({ url } = await house.web());
-    await house.worker({ env: { PUBLIC_URL: url } });
-    browser = await openBrowser();
+    stage = await openStage();
+    ({ house, url, browser } = stage);
     lent = await lentJob(house, url);
     await prove(lent, 'Foundation');
   });
-  afterAll(async () => {
-    await browser.close();
-    await house.close();
-  });
+  afterAll(() => stage.close());
 
   it('is priced at a desk, reviewed, sent out, and signed by both homeowners on their phones', async () => {
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);

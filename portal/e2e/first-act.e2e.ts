@@ -1,25 +1,21 @@
 import type { Browser } from 'playwright-core';
-import path from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { House } from '../../api/test/support/house.ts';
-import { desk, openBrowser, phone } from './support/browser.ts';
+import type { House } from '../../api/test/support/house.ts';
+import { desk, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+import { openStage, type Stage } from './support/stage.ts';
 
 describe('the first act in a browser', () => {
+  let stage: Stage;
   let house: House;
   let url: string;
   let browser: Browser;
 
   beforeAll(async () => {
-    house = await House.open({ PORTAL_DIST: path.join(import.meta.dirname, '../dist') });
-    ({ url } = await house.web());
-    await house.worker({ env: { PUBLIC_URL: url } });
-    browser = await openBrowser();
+    stage = await openStage();
+    ({ house, url, browser } = stage);
   });
-  afterAll(async () => {
-    await browser.close();
-    await house.close();
-  });
+  afterAll(() => stage.close());
 
   it('lets a builder sign up, create a job and invite; the homeowner comes by the mail and sees the job; a stranger does not', async () => {
     const builder = await Someone.at(browser, house, url, 'nora@brightwater.example', desk);

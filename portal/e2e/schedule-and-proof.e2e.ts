@@ -2,29 +2,26 @@ import type { Browser } from 'playwright-core';
 import path from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { createJob, join, principalWithFirm } from '../../api/test/support/builders.ts';
-import { House } from '../../api/test/support/house.ts';
+import type { House } from '../../api/test/support/house.ts';
 import { jpeg } from '../../api/test/support/photos.ts';
 import { smallSchedule } from '../../api/test/support/schedule-builders.ts';
-import { desk, openBrowser, phone } from './support/browser.ts';
+import { desk, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+import { openStage, type Stage } from './support/stage.ts';
 
 const sample = (name: string) => path.join(import.meta.dirname, '../../api/test/samples', name);
 
 describe('schedule of values, photos and proof in a browser', () => {
+  let stage: Stage;
   let house: House;
   let url: string;
   let browser: Browser;
 
   beforeAll(async () => {
-    house = await House.open({ PORTAL_DIST: path.join(import.meta.dirname, '../dist') });
-    ({ url } = await house.web());
-    await house.worker({ env: { PUBLIC_URL: url } });
-    browser = await openBrowser();
+    stage = await openStage();
+    ({ house, url, browser } = stage);
   });
-  afterAll(async () => {
-    await browser.close();
-    await house.close();
-  });
+  afterAll(() => stage.close());
 
   it('imports a schedule that lacked a line, put right by keyboard in the sheet', async () => {
     const { principal, firmId } = await principalWithFirm(house, url);

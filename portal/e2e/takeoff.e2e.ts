@@ -1,30 +1,26 @@
 import type { Browser } from 'playwright-core';
-import path from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { lentJob, type LentJob } from '../../api/test/support/draw-builders.ts';
-import { House } from '../../api/test/support/house.ts';
-import { desk, openBrowser, phone } from './support/browser.ts';
+import type { House } from '../../api/test/support/house.ts';
+import { desk, phone } from './support/browser.ts';
 import { Someone } from './support/someone.ts';
+import { openStage, type Stage } from './support/stage.ts';
 
 const { SHOTS } = process.env;
 
 describe('a floor, counted as drawn and as proposed', () => {
+  let stage: Stage;
   let house: House;
   let url: string;
   let browser: Browser;
   let lent: LentJob;
 
   beforeAll(async () => {
-    house = await House.open({ PORTAL_DIST: path.join(import.meta.dirname, '../dist') });
-    ({ url } = await house.web());
-    await house.worker({ env: { PUBLIC_URL: url } });
-    browser = await openBrowser();
+    stage = await openStage();
+    ({ house, url, browser } = stage);
     lent = await lentJob(house, url);
   });
-  afterAll(async () => {
-    await browser.close();
-    await house.close();
-  });
+  afterAll(() => stage.close());
 
   it('becomes the lines of a change; a missing cost is asked for, a span beyond the screen is said', async () => {
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
