@@ -11,7 +11,7 @@ module.exports = {
     error('portal-not-api', 'the portal speaks to the API over HTTP only', { path: '^portal/' , pathNot: '^portal/e2e/' }, { path: '^(api|mocks)/' }),
     error('api-not-portal', 'the API does not know its pages', { path: '^api/' }, { path: '^portal/' }),
     error('no-mocks-in-the-product', 'stand-ins serve the launcher and tests', { path: '^(api|portal|shared)/src/', pathNot: tests }, { path: '^mocks/' }),
-    error('stand-ins-stand-alone', 'a stand-in that shares code with the API would share its mistakes', { path: '^mocks/(stripe|mail)/' }, { path: '^(api|portal|shared)/' }),
+    error('stand-ins-stand-alone', 'a stand-in that shares code with the API would share its mistakes', { path: '^mocks/(stripe|mail|storage)/' }, { path: '^(api|portal|shared)/' }),
     error('no-tests-in-the-product', 'what runs does not import tests', { path: '^[^/]+/src/', pathNot: tests }, { path: tests }),
     error('features-apart', 'features of the portal never import each other; app composes them',
       { path: '^portal/src/features/([^/]+)/' }, { path: '^portal/src/features/', pathNot: '^portal/src/features/$1/' }),

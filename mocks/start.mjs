@@ -12,7 +12,7 @@ import { requireFreePorts } from './lib/ports.mjs';
 import { pause } from './lib/processes.mjs';
 import { secretsIn } from './lib/secrets.mjs';
 import { portsOf, readSettings } from './lib/settings.mjs';
-import { startStandIns } from './lib/stand-ins.mjs';
+import { startStandIns, storageStandIn } from './lib/stand-ins.mjs';
 import { watchSources } from './lib/watch.mjs';
 import { welcome } from './lib/welcome.mjs';
 import { startPostgres } from './postgres.mjs';
@@ -82,6 +82,7 @@ function environment(settings, ports, pg) {
     LOG_LEVEL: 'warn',
     ...(ports.smtp && ports.mailPage ? { SMTP_URL: `smtp://127.0.0.1:${ports.smtp.port}`, MAIL_PAGE_URL: at(ports.mailPage.port) } : {}),
     ...(ports.stripe ? { STRIPE_API_URL: at(ports.stripe.port) } : {}),
+    ...(ports.storage ? storageStandIn(ports.storage.port) : {}),
     ...settings,
     PORT: String(ports.web.port),
     FILES_DIR: settings['FILES_DIR'] ? path.resolve(root, settings['FILES_DIR']) : inData('files'),

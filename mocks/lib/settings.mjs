@@ -28,6 +28,7 @@ export const variables = {
   STRIPE_PORT: port,
   MAIL_PAGE_PORT: port,
   SMTP_PORT: port,
+  STORAGE_PORT: port,
   POSTGRES_PORT: port,
   PG_BIN: any,
   PUBLIC_URL: web,
@@ -38,7 +39,14 @@ export const variables = {
   STRIPE_SETTLE_AFTER_MS: milliseconds,
   SMTP_URL: smtp,
   MAIL_FROM: mail,
+  STORAGE: oneOf('disk', 's3'),
   FILES_DIR: any,
+  S3_ENDPOINT: web,
+  S3_REGION: any,
+  S3_BUCKET: (value) => (value.length >= 3 ? undefined : 'must have at least 3 characters'),
+  S3_ACCESS_KEY_ID: any,
+  S3_SECRET_ACCESS_KEY: (value) => (value.length >= 16 ? undefined : 'must have at least 16 characters'),
+  S3_PATH_STYLE: oneOf('true', 'false'),
   DATABASE_POOL: (value) => (/^\d{1,3}$/.test(value) && Number(value) >= 1 && Number(value) <= 100 ? undefined : 'must be a number from 1 to 100'),
   DEMO: oneOf('true', 'false'),
   LOG_LEVEL: oneOf('fatal', 'error', 'warn', 'info', 'debug', 'silent'),
@@ -73,6 +81,10 @@ export function readSettings(file, environment) {
   }
   if (settings['STRIPE_SECRET_KEY'] && !settings['STRIPE_WEBHOOK_SECRET']) throw new Failure('STRIPE_SECRET_KEY is set, so STRIPE_WEBHOOK_SECRET must be set too (Stripe shows it beside the webhook endpoint).');
   if (settings['STRIPE_WEBHOOK_SECRET'] && !settings['STRIPE_SECRET_KEY']) throw new Failure('STRIPE_WEBHOOK_SECRET is set, so STRIPE_SECRET_KEY must be set too.');
+  const bucket = Object.keys(settings).find((name) => name.startsWith('S3_'));
+  if (bucket && settings['STORAGE'] !== 's3') throw new Failure(`${bucket} is set, so STORAGE must be s3.`);
+  const needed = ['S3_BUCKET', 'S3_ACCESS_KEY_ID', 'S3_SECRET_ACCESS_KEY'].find((name) => !settings[name]);
+  if (bucket && needed) throw new Failure(`${bucket} is set, so ${needed} must be set too.`);
   return settings;
 }
 
@@ -88,6 +100,7 @@ export function portsOf(settings, watch) {
     web: one('PORT', 4300, 'the portal and its API'),
     ...(watch ? { dev: one('DEV_PORT', 4301, "the portal's development server") } : {}),
     ...(settings['STRIPE_SECRET_KEY'] ? {} : { stripe: one('STRIPE_PORT', 4310, 'the Stripe stand-in') }),
+    ...(settings['STORAGE'] === 's3' && !settings['S3_BUCKET'] ? { storage: one('STORAGE_PORT', 4330, 'the storage stand-in') } : {}),
     ...(settings['SMTP_URL'] ? {} : { mailPage: one('MAIL_PAGE_PORT', 4320, 'the mail page'), smtp: one('SMTP_PORT', 4325, 'the mail server') }),
   };
 }

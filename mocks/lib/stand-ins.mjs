@@ -4,6 +4,12 @@ import { Failure } from './failure.mjs';
 /** Where Stripe, or its stand-in, sends events. */
 const webhookPath = '/api/payments/webhook';
 
+/** The one bucket of the storage stand-in, and who may use it. */
+const demoBucket = { S3_BUCKET: 'tallypole-demo', S3_ACCESS_KEY_ID: 'demo-access-key', S3_SECRET_ACCESS_KEY: 'demo-secret-access-key' };
+
+/** What web and worker need to keep their files in the stand-in. @param {number} port */
+export const storageStandIn = (port) => ({ S3_ENDPOINT: `http://127.0.0.1:${port}`, ...demoBucket });
+
 /**
  * Starts the local stand-ins for what .env points at nothing real.
  * @param {import('./house.mjs').House} house
@@ -24,6 +30,10 @@ export async function startStandIns(house, { ports, env, data }) {
       STRIPE_SETTLE_AFTER_MS: env['STRIPE_SETTLE_AFTER_MS'] ?? '20000',
     };
     starting.push(ready(house, 'Stripe stand-in', ['mocks/lib/stripe-process.mjs'], stripe));
+  }
+  if (ports.storage) {
+    const storage = { STORAGE_PORT: String(ports.storage.port), STORAGE_DATA: path.join(data, 'storage'), ...demoBucket };
+    starting.push(ready(house, 'storage stand-in', ['mocks/lib/storage-process.mjs'], storage));
   }
   await Promise.all(starting);
 }

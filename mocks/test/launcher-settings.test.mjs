@@ -24,6 +24,9 @@ test.each([
   ['DEMO=yes', '.env, line 1: DEMO must be one of true, false.'],
   ['QUEUE_URL=postgres://x', '.env, line 1: QUEUE_URL is made by npm start itself and belongs to a deployment without it. See .env.example.'],
   ['STRIPE_SECRET_KEY=sk_test_1', 'STRIPE_SECRET_KEY is set, so STRIPE_WEBHOOK_SECRET must be set too (Stripe shows it beside the webhook endpoint).'],
+  ['STORAGE=tape', '.env, line 1: STORAGE must be one of disk, s3.'],
+  ['S3_BUCKET=tally', 'S3_BUCKET is set, so STORAGE must be s3.'],
+  ['STORAGE=s3\nS3_BUCKET=tally', 'S3_BUCKET is set, so S3_ACCESS_KEY_ID must be set too.'],
 ])('%j is refused with one line', (text, message) => {
   expect(() => read(text)).toThrow(new Error(message));
   expect(message).not.toContain('\n');
@@ -40,12 +43,14 @@ test('real Stripe or real mail leave their stand-ins out', () => {
   expect(Object.values(usual).map(({ port }) => port)).toEqual([4300, 4310, 4320, 4325]);
   const real = read('STRIPE_SECRET_KEY=sk_test_1\nSTRIPE_WEBHOOK_SECRET=whsec_1\nSMTP_URL=smtps://u:p@mail.example.com');
   expect(Object.keys(portsOf(real, true))).toEqual(['web', 'dev']);
+  expect(portsOf(read('STORAGE=s3'), false)).toMatchObject({ storage: { port: 4330 } });
+  expect(portsOf(read('STORAGE=s3\nS3_BUCKET=tally\nS3_ACCESS_KEY_ID=a\nS3_SECRET_ACCESS_KEY=0123456789abcdef'), false)).not.toHaveProperty('storage');
 });
 
 test('.env.example names every variable, no other one, and is itself a valid .env', () => {
   const text = readFileSync(path.join(import.meta.dirname, '../../.env.example'), 'utf8');
   expect(read(text)).toEqual({});
-  const shown = [...text.matchAll(/^#([A-Z_]+)=/gm)].map(([, name]) => name);
+  const shown = [...text.matchAll(/^#([A-Z0-9_]+)=/gm)].map(([, name]) => name);
   expect(shown.sort()).toEqual(Object.keys(variables).sort());
   const deployed = [...text.matchAll(/^# {3}([A-Z_]+)/gm)].map(([, name]) => name);
   expect(deployed.sort()).toEqual([...deploymentOnly].sort());

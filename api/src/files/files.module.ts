@@ -1,13 +1,13 @@
 import { Global, Module } from '@nestjs/common';
-import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
+import { CONFIGURATION } from '../common/configuration.ts';
 import { FILE_STORAGE } from './file-storage.ts';
 import { FilesController } from './files.controller.ts';
 import { FilesRepository } from './files.repository.ts';
 import { FilesService } from './files.service.ts';
-import { LocalDiskStorage } from './local-disk-storage.ts';
+import { storageOf } from './storage-of.ts';
 import { UploadReceiver } from './upload-receiver.ts';
 
-const storage = { provide: FILE_STORAGE, inject: [CONFIGURATION], useFactory: ({ FILES_DIR }: Configuration) => new LocalDiskStorage(FILES_DIR) };
+const storage = { provide: FILE_STORAGE, inject: [CONFIGURATION], useFactory: storageOf };
 
 /** Where bytes are kept, for web and worker alike. */
 @Global()

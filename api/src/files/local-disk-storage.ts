@@ -5,8 +5,7 @@ import path from 'node:path';
 import type { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
 import type { FileStorage } from './file-storage.ts';
-
-const KEY = /^[0-9a-f-]{36}\/[0-9a-f-]{36}\/\d{4}\/[0-9a-f-]{36}$/;
+import { checkedKey } from './storage-key.ts';
 
 /** Files under one folder. A file appears whole or not at all: it is written beside its place, synced and then linked to its name. */
 export class LocalDiskStorage implements FileStorage {
@@ -39,8 +38,7 @@ export class LocalDiskStorage implements FileStorage {
   }
 
   private pathOf(key: string): string {
-    if (!KEY.test(key)) throw new Error('This is no storage key.');
-    return path.join(this.folder, key);
+    return path.join(this.folder, checkedKey(key));
   }
 }
 

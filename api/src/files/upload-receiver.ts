@@ -49,7 +49,8 @@ export class UploadReceiver {
       if (answered.replayed) await this.storage.remove(storageKey);
       return answered;
     } catch (error) {
-      if (error instanceof Problem) await this.storage.remove(storageKey);
+      // what can't be forgotten now stays behind unseen; the sender hears what was wrong with the form
+      if (error instanceof Problem) await this.storage.remove(storageKey).catch(() => undefined);
       throw error;
     }
   }
