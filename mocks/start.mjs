@@ -123,7 +123,7 @@ async function migrate(pg, env) {
 /** @param {number} port */
 async function healthy(port) {
   for (const until = Date.now() + 60_000; !house.stopping; await pause(100)) {
-    const answer = await fetch(`http://127.0.0.1:${port}/api/health`, { signal: AbortSignal.timeout(2000) }).catch(() => undefined);
+    const answer = await fetch(`http://127.0.0.1:${port}/api/health/ready`, { signal: AbortSignal.timeout(2000) }).catch(() => undefined);
     if (answer?.ok) return;
     if (Date.now() > until) throw new Failure('The web server did not become ready within a minute.');
   }

@@ -15,7 +15,7 @@ import { DrawsModule } from './draws/draws.module.ts';
 import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
 import { HouseModule } from './house/house.module.ts';
-import { HealthController } from './health/health.controller.ts';
+import { HealthModule } from './health/health.module.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
 import { MilestonesModule } from './milestones/milestones.module.ts';
 import { LendingModule } from './lending/lending.module.ts';
@@ -32,8 +32,7 @@ import { RecordPagesModule } from './record/record-pages.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, RecordPagesModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, DemoModule],
-  controllers: [HealthController],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, RecordPagesModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, HealthModule, DemoModule],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },
     { provide: APP_PIPE, useFactory: validationPipe },

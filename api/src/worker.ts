@@ -1,11 +1,12 @@
 import 'reflect-metadata';
 import { NestFactory } from '@nestjs/core';
-import { Logger as QueueLogger, run } from 'graphile-worker';
+import { run } from 'graphile-worker';
 import { readConfiguration } from './common/configuration.ts';
 import { leaveWithParent } from './common/leave-with-parent.ts';
 import { PinoLogger, rootLogger } from './common/logging.ts';
 import { startOrExplain } from './common/start-or-explain.ts';
 import { Mailer } from './notices/mailer.ts';
+import { queueLogger } from './queue/queue-log.ts';
 import { DeadWorkerSweep } from './queue/sweep.ts';
 import { tasks } from './queue/tasks.ts';
 import { WorkerModule } from './worker.module.ts';
@@ -22,13 +23,10 @@ await startOrExplain(async () => {
     pollInterval: 1_000,
     noHandleSignals: true,
     // old limits and answered keys go once a day; what Stripe did without our hearing of it is asked for each minute
-    crontab: '20 3 * * * sweep_old\n* * * * * sweep_payments',
+    crontab: '20 3 * * * sweep_old ?fill=1d\n* * * * * sweep_payments',
     events: sweep.events,
     taskList: tasks(app, mailer),
-    logger: new QueueLogger(() => (level, message, meta) => {
-      if ((level as string) === 'error') logger.error({ meta: { job: (meta as { job?: { id?: string } } | undefined)?.job?.id } }, message);
-      else logger.debug(message);
-    }),
+    logger: queueLogger(logger),
   });
   await sweep.start((error) => logger.error({ err: error }, 'sweep'));
   let leaving = false;

@@ -1,4 +1,4 @@
-import { Injectable, type CanActivate, type ExecutionContext } from '@nestjs/common';
+import { Injectable, Logger, type CanActivate, type ExecutionContext } from '@nestjs/common';
 import { Reflector } from '@nestjs/core';
 import type { Request } from 'express';
 import { Clock } from './clock.ts';
@@ -11,8 +11,11 @@ interface Limit {
   seconds: number;
 }
 
-/** Hits per window and source address, shared by all servers through an unlogged table. Reads are bounded by the pool alone. */
-const LIMITS: Readonly<Record<RateClass, Limit | null>> = {
+/**
+ * Hits per window and source address, shared by all servers through an unlogged table. Reads are bounded by the pool alone, and what
+ * Stripe sends by its signature. DEVELOPERS.md lists them; a test compares.
+ */
+export const LIMITS: Readonly<Record<RateClass, Limit | null>> = {
   read: null,
   webhook: null,
   write: { hits: 300, seconds: 60 },
@@ -23,6 +26,8 @@ const LIMITS: Readonly<Record<RateClass, Limit | null>> = {
 
 @Injectable()
 export class RateLimitGuard implements CanActivate {
+  private readonly logger = new Logger('rate-limit');
+
   constructor(
     private readonly reflector: Reflector,
     private readonly work: UnitOfWork,
@@ -33,14 +38,22 @@ export class RateLimitGuard implements CanActivate {
     const rate = this.reflector.get<RateClass | undefined>(RATE, context.getHandler()) ?? 'write';
     const limit = LIMITS[rate];
     if (!limit) return true;
-    const { ip } = context.switchToHttp().getRequest<Request>();
-    await this.take(`${rate}:${ip ?? 'unknown'}`, limit);
+    const { ip = 'unknown', id } = context.switchToHttp().getRequest<Request & { id?: string }>();
+    await this.take(`${rate}:${ip}`, limit, { address: ip, requestId: id });
     return true;
   }
 
-  /** Counts one hit and refuses when there were too many in this window. The count is committed either way. */
-  async take(key: string, limit: Limit): Promise<void> {
-    const row = await this.work.write(undefined, (tx) => tx.one<{ hits: number }>('select app.hit($1, $2, $3) as hits', [key, limit.seconds, this.clock.now()]));
-    if ((row?.hits ?? 0) > limit.hits) throw new Problem('too_many_tries', { retryAfterSeconds: limit.seconds });
+  /** Counts one hit and refuses when there were too many in this window. The count is committed either way. `about` goes to the log with the first refusal. */
+  async take(key: string, limit: Limit, about: object = {}): Promise<void> {
+    const now = this.clock.now();
+    const row = await this.work.write(undefined, (tx) => tx.one<{ hits: number }>('select app.hit($1, $2, $3) as hits', [key, limit.seconds, now]));
+    const hits = row?.hits ?? 0;
+    if (hits <= limit.hits) return;
+    // once in a window: whoever floods us shall not flood the log; what follows the colon may be somebody's address
+    if (hits === limit.hits + 1) this.logger.warn({ event: 'rate limit passed', limit: key.split(':')[0], ...about });
+    const seconds = limit.seconds - (Math.floor(now.getTime() / 1_000) % limit.seconds);
+    throw new Problem('too_many_tries', { retryAfterSeconds: seconds, detail: `Too many tries. Wait ${spoken(seconds)} and try again.` });
   }
 }
+
+const spoken = (seconds: number): string => (seconds <= 60 ? `${seconds} second${seconds === 1 ? '' : 's'}` : `${Math.ceil(seconds / 60)} minutes`);

@@ -10,6 +10,11 @@ export class EditedMigration extends Error {
   override readonly name = 'EditedMigration';
 }
 
+export interface AppliedMigration {
+  name: string;
+  sha256: string;
+}
+
 const NAME = /^\d{4}-.+\.(ts|js)$/;
 const folder = fileURLToPath(new URL('./migrations', import.meta.url));
 const sha256 = (text: string) => createHash('sha256').update(text).digest('hex');
@@ -22,7 +27,7 @@ export async function migrate(client: pg.Client): Promise<string[]> {
   await client.query(`create table if not exists migration (name text primary key, sha256 text not null, applied_at timestamptz not null default now())`);
   await client.query(`select pg_advisory_lock(hashtext('migration'))`);
   try {
-    const files = readdirSync(folder).filter((file) => NAME.test(file)).sort();
+    const files = filesOf();
     const umzug = new Umzug({
       migrations: await Promise.all(files.map((file) => migration(client, file))),
       context: client,
@@ -35,6 +40,16 @@ export async function migrate(client: pg.Client): Promise<string[]> {
     await client.query(`select pg_advisory_unlock(hashtext('migration'))`);
   }
 }
+
+/** Migrations of this build that a database lacks, or has in other words. Newer ones in the database are another build's. */
+export async function missingMigrations(applied: readonly AppliedMigration[]): Promise<string[]> {
+  const hashes = new Map(applied.map((row) => [row.name, row.sha256]));
+  const missing: string[] = [];
+  for (const file of filesOf()) if (hashes.get(nameOf(file)) !== sha256(await sqlOf(file))) missing.push(nameOf(file));
+  return missing;
+}
+
+const filesOf = () => readdirSync(folder).filter((file) => NAME.test(file)).sort();
 
 async function sqlOf(file: string): Promise<string> {
   const module = (await import(pathToFileURL(path.join(folder, file)).href)) as { default: string };

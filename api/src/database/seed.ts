@@ -14,6 +14,7 @@ import { seedWorker } from './seeds/seed-worker.ts';
 
 await startOrExplain(async () => {
   const configuration = readConfiguration(process.env);
+  if (configuration.NODE_ENV === 'production') throw new Error('The demo data does not belong into production.');
   const app = await NestFactory.create<NestExpressApplication>(AppModule, { logger: ['error'], abortOnError: false, rawBody: true });
   configure(app, { ...configuration, NODE_ENV: 'production' }, rootLogger('error'));
   await app.listen(0, '127.0.0.1');

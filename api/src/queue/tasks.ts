@@ -1,4 +1,4 @@
-import type { INestApplicationContext } from '@nestjs/common';
+import { Logger, type INestApplicationContext } from '@nestjs/common';
 import type { TaskList } from 'graphile-worker';
 import { z } from 'zod';
 import { sendCode } from '../auth/send-code.repository.ts';
@@ -8,6 +8,7 @@ import { UnitOfWork } from '../common/unit-of-work.ts';
 import { FILE_STORAGE, type FileStorage } from '../files/file-storage.ts';
 import type { Mailer } from '../notices/mailer.ts';
 import { sendNotice } from '../notices/send-notice.repository.ts';
+import { sweepOld } from '../operation/sweep-old.repository.ts';
 import { paymentTasks } from '../payments/payment-tasks.ts';
 import { photoTasks } from '../photos/photo-tasks.ts';
 
@@ -25,8 +26,6 @@ export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
     ...changeTasks(app),
     send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
     send_notice: (payload) => sendNotice(work, mailer, { publicUrl: configuration.PUBLIC_URL, storage: app.get<FileStorage>(FILE_STORAGE) }, NoticeJob.parse(payload)),
-    sweep_old: async () => {
-      await work.write(undefined, (tx) => tx.rows('select app.sweep(now())'));
-    },
+    sweep_old: () => sweepOld(work, new Logger('sweep')),
   };
 }

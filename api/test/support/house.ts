@@ -1,5 +1,5 @@
 import { spawn, type ChildProcess } from 'node:child_process';
-import { mkdtempSync, rmSync } from 'node:fs';
+import { closeSync, mkdtempSync, openSync, rmSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import path from 'node:path';
@@ -14,6 +14,10 @@ export interface ProcessOptions {
   env?: Record<string, string>;
   /** A module that is loaded before the server: how a test kills a process at a chosen moment. */
   preload?: string;
+  /** A file for what the process logs. */
+  logTo?: string;
+  /** Waits only until the process lives, ready or not. */
+  alive?: boolean;
 }
 
 export interface WebProcess {
@@ -27,7 +31,8 @@ export class House {
   readonly env: Record<string, string>;
   readonly database: string;
   private readonly server = connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]);
-  private readonly folder = mkdtempSync(path.join(tmpdir(), 'tally-test-'));
+  /** For files of this house; gone with it. */
+  readonly folder = mkdtempSync(path.join(tmpdir(), 'tally-test-'));
   private readonly children: ChildProcess[] = [];
   private owner: Promise<pg.Client> | undefined;
 
@@ -68,7 +73,7 @@ export class House {
     const child = this.spawn('dist/web.js', { ...options, env: { PORT: String(port), PUBLIC_URL: url, ...options.env } });
     await until(async () => {
       if (child.exitCode !== null) throw new Error(`The web process ended with ${child.exitCode}.`);
-      return await fetch(`${url}/api/health`).then((answer) => answer.ok, () => false);
+      return await fetch(`${url}/api/health${options.alive ? '' : '/ready'}`).then((answer) => answer.ok, () => false);
     }, 'the web process');
     return { url, child };
   }
@@ -82,9 +87,13 @@ export class House {
     return child;
   }
 
+  get ownerUrl(): string {
+    return this.server.url('tally_owner', this.database);
+  }
+
   /** Runs SQL as the owner, who sees everything. */
   async sql<T extends pg.QueryResultRow>(text: string, values: unknown[] = []): Promise<T[]> {
-    this.owner ??= connected(this.server.url('tally_owner', this.database));
+    this.owner ??= connected(this.ownerUrl);
     return (await (await this.owner).query<T>(text, values)).rows;
   }
 
@@ -104,6 +113,15 @@ export class House {
     return (await client.query(text).finally(() => client.end())).rows as pg.QueryResultRow[];
   }
 
+  /** Ends all connections of a role, and lets it make new ones or not. */
+  disconnect(role: 'app_read' | 'app_write' | 'app_worker' | 'queue_owner', letBack: boolean): void {
+    this.server.psql(
+      'postgres',
+      `${letBack ? 'grant' : 'revoke'} connect on database :"name" ${letBack ? 'to' : 'from'} :"role"; select pg_terminate_backend(pid) from pg_stat_activity where usename = :'role' and datname = :'name'`,
+      { name: this.database, role },
+    );
+  }
+
   async kill(child: ChildProcess, signal: NodeJS.Signals = 'SIGKILL'): Promise<void> {
     if (child.exitCode !== null || child.signalCode !== null) return;
     const gone = new Promise((done) => child.once('exit', done));
@@ -119,9 +137,11 @@ export class House {
     rmSync(this.folder, { recursive: true, force: true });
   }
 
-  private spawn(script: string, { env, preload }: ProcessOptions): ChildProcess {
+  private spawn(script: string, { env, preload, logTo }: ProcessOptions): ChildProcess {
     const args = [...(preload ? ['--import', preload] : []), script];
-    const child = spawn(process.execPath, args, { cwd: api, env: { ...this.env, ...env }, stdio: ['ignore', 'inherit', 'inherit', 'ipc'] });
+    const log = logTo === undefined ? 'inherit' : openSync(logTo, 'a');
+    const child = spawn(process.execPath, args, { cwd: api, env: { ...this.env, ...env }, stdio: ['ignore', log, log, 'ipc'] });
+    if (typeof log === 'number') closeSync(log);
     this.children.push(child);
     return child;
   }
