@@ -14,6 +14,7 @@ import { DocumentsModule } from './documents/documents.module.ts';
 import { DrawsModule } from './draws/draws.module.ts';
 import { FilesModule } from './files/files.module.ts';
 import { FirmsModule } from './firms/firms.module.ts';
+import { GuestLinksModule } from './guest-links/guest-links.module.ts';
 import { HouseModule } from './house/house.module.ts';
 import { HealthModule } from './health/health.module.ts';
 import { JobsModule } from './jobs/jobs.module.ts';
@@ -32,7 +33,7 @@ import { RecordPagesModule } from './record/record-pages.module.ts';
 import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.module.ts';
 
 @Module({
-  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, RecordPagesModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, HealthModule, DemoModule],
+  imports: [ConfigurationModule, DatabaseModule, CommonModule, QueueModule, RecordModule, RecordPagesModule, LedgerModule, NoticesModule, AuthModule, FirmsModule, PeopleModule, JobsModule, FilesModule, ScheduleOfValuesModule, MilestonesModule, GuestLinksModule, PhotosModule, PaymentsModule, LoansModule, DrawsModule, LendingModule, MoneyModule, HouseModule, ChangesModule, DocumentsModule, HealthModule, DemoModule],
   providers: [
     { provide: APP_FILTER, useClass: ProblemFilter },
     { provide: APP_PIPE, useFactory: validationPipe },

@@ -17,7 +17,7 @@ interface Document {
 
 const committed = path.join(import.meta.dirname, '../openapi.json');
 /** Routes that carry no session by design. */
-const PUBLIC = ['GET /api/demo/people', 'GET /api/health', 'GET /api/health/ready', 'POST /api/auth/codes', 'POST /api/auth/refresh', 'POST /api/auth/sessions', 'POST /api/payments/webhook'];
+const PUBLIC = ['GET /api/demo/people', 'GET /api/health', 'GET /api/health/ready', 'POST /api/auth/codes', 'POST /api/auth/refresh', 'POST /api/auth/sessions', 'POST /api/guest/visits', 'POST /api/payments/webhook'];
 const REFUSED = [401, 403, 404];
 
 describe('every route', () => {
@@ -42,7 +42,7 @@ describe('every route', () => {
   });
 
   it('declares who may use it and how often', () => {
-    const known = [...Object.keys(permissions), 'public', 'signed_in'];
+    const known = [...Object.keys(permissions), 'public', 'guest', 'signed_in'];
     const bare = operations.filter(({ operation }) => !known.includes(operation['x-access'] ?? '') || !operation['x-rate']);
     expect(bare.map(({ method, path: route }) => `${method} ${route}`)).toEqual([]);
     const open = operations.filter(({ operation }) => operation['x-access'] === 'public').map(({ method, path: route }) => `${method} ${route}`).sort();

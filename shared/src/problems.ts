@@ -7,6 +7,8 @@ export const problems = {
   malformed_request: { status: 400, title: 'The request could not be read.' },
   idempotency_key_missing: { status: 400, title: 'The request lacks its idempotency key.' },
   not_signed_in: { status: 401, title: 'Sign in to go on.' },
+  visit_over: { status: 401, title: 'Your visit is over. Open the link in the mail again.' },
+  link_over: { status: 410, title: 'This link is no longer good.' },
   wrong_code: { status: 400, title: 'That code is not right. Check the latest mail, or ask for a new code.' },
   code_expired: { status: 400, title: 'That code is no longer good. Ask for a new one.' },
   presence_needed: { status: 403, title: 'Confirm that it is you: enter the code we mailed.' },

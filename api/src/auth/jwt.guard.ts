@@ -5,7 +5,7 @@ import { Problem } from '../common/problem.ts';
 import { ACCESS, type RouteAccess } from '../common/route.ts';
 import type { Actor } from '../common/unit-of-work.ts';
 
-/** Everybody must be signed in unless the route says `public`. A route that declares nothing is refused to all. */
+/** Everybody must be signed in unless the route says `public`, or `guest`, which has a guard of its own. A route that declares nothing is refused to all. */
 @Injectable()
 export class JwtGuard extends AuthGuard('jwt') {
   constructor(private readonly reflector: Reflector) {
@@ -15,7 +15,7 @@ export class JwtGuard extends AuthGuard('jwt') {
   override canActivate(context: ExecutionContext) {
     const access = this.reflector.get<RouteAccess | undefined>(ACCESS, context.getHandler());
     if (access === undefined) throw new Problem('not_found');
-    return access === 'public' ? true : super.canActivate(context);
+    return access === 'public' || access === 'guest' ? true : super.canActivate(context);
   }
 
   override handleRequest<T = Actor>(error: unknown, actor: T | false): T {

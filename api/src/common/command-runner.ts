@@ -27,19 +27,22 @@ export class CommandRunner {
   constructor(private readonly work: UnitOfWork) {}
 
   run<T extends Json | object>(actor: Actor, command: Command<T>): Promise<Answered<T>> {
+    return this.work.write(actor, (tx) => this.inside(tx, actor.personId, command));
+  }
+
+  /** The same in a transaction in which somebody acts already: a guest, who has no session of their own. */
+  async inside<T extends Json | object>(tx: Tx, personId: string, command: Command<T>): Promise<Answered<T>> {
     const hash = createHash('sha256').update(canonicalText(command.input)).digest();
-    const id = [actor.personId, command.operation, command.key];
-    return this.work.write(actor, async (tx) => {
-      const claimed = await tx.one(
-        'insert into command (actor_id, operation, key, input_hash) values ($1, $2, $3, $4) on conflict do nothing returning key',
-        [...id, hash],
-      );
-      await command.authorize(tx);
-      if (!claimed) return await this.replay<T>(tx, id, hash);
-      const answer = await command.act(tx);
-      await tx.rows('select app.answer($1, $2, $3, $4)', [...id, JSON.stringify(answer)]);
-      return { answer, replayed: false };
-    });
+    const id = [personId, command.operation, command.key];
+    const claimed = await tx.one(
+      'insert into command (actor_id, operation, key, input_hash) values ($1, $2, $3, $4) on conflict do nothing returning key',
+      [...id, hash],
+    );
+    await command.authorize(tx);
+    if (!claimed) return await this.replay<T>(tx, id, hash);
+    const answer = await command.act(tx);
+    await tx.rows('select app.answer($1, $2, $3, $4)', [...id, JSON.stringify(answer)]);
+    return { answer, replayed: false };
   }
 
   private async replay<T>(tx: Tx, id: string[], hash: Buffer): Promise<Answered<T>> {

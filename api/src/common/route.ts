@@ -6,8 +6,8 @@ import type { Permission } from '@tallypole/shared/schemas/permissions';
 import { Problem } from './problem.ts';
 import type { Actor } from './unit-of-work.ts';
 
-/** `public`: anybody; `signed_in`: any person, about themselves; otherwise the permission that the service checks on the resource. */
-export type RouteAccess = Permission | 'public' | 'signed_in';
+/** `public`: anybody; `guest`: whoever came by a link, see guest-links; `signed_in`: any person, about themselves; otherwise the permission that the service checks on the resource. */
+export type RouteAccess = Permission | 'public' | 'guest' | 'signed_in';
 /** Named classes of limits, see rate-limit.guard.ts. */
 export type RateClass = 'read' | 'write' | 'sign_in' | 'code' | 'upload' | 'webhook';
 

@@ -14,6 +14,21 @@ export interface Actor {
   personId: string;
 }
 
+/** Somebody who came by a link: they act as a person without an address, in one visit, on what the link is for. */
+export interface Guest {
+  sessionId: string;
+  linkId: string;
+  firmId: string;
+  jobId: string;
+  personId: string;
+  firmName: string;
+  /** Their address, masked. */
+  sentTo: string;
+  expiresAt: Date;
+  /** When the visit's last code was entered; until then nothing of the link is shown. */
+  confirmedAt: Date | null;
+}
+
 /** One open transaction and the statements in it. */
 export class Tx {
   statements = 0;
@@ -57,6 +72,15 @@ export class UnitOfWork {
       requireRole(roles, permission);
     };
     return this.transact(this.reading, begin, (tx) => work(tx, roles));
+  }
+
+  /** A read by a guest, who is known by the hash of their visit's token. */
+  readAsGuest<T>(visit: Buffer, work: (tx: Tx, guest: Guest) => Promise<T>): Promise<T> {
+    return this.transact(this.reading, () => Promise.resolve(), async (tx) => work(tx, await actAsGuest(tx, visit, this.clock.now())));
+  }
+
+  writeAsGuest<T>(visit: Buffer, work: (tx: Tx, guest: Guest) => Promise<T>): Promise<T> {
+    return this.write(undefined, async (tx) => work(tx, await actAsGuest(tx, visit, this.clock.now())));
   }
 
   /** READ COMMITTED; deadlocks and serialization failures are tried again. Without an actor only definer functions work. */
@@ -106,5 +130,19 @@ async function actOnJob(tx: Tx, actor: Actor, jobId: string, now: Date): Promise
     return row?.roles ?? [];
   } catch (error) {
     throw sqlState(error) === 'TP002' ? new Problem('not_signed_in') : error;
+  }
+}
+
+async function actAsGuest(tx: Tx, visit: Buffer, now: Date): Promise<Guest> {
+  try {
+    const guest = await tx.one<Guest>(
+      `select session_id as "sessionId", link_id as "linkId", firm_id as "firmId", job_id as "jobId", person_id as "personId", firm_name as "firmName",
+         sent_to as "sentTo", expires_at as "expiresAt", confirmed_at as "confirmedAt" from app.act_as_guest($1, $2)`,
+      [visit, now],
+    );
+    if (!guest) throw new Problem('visit_over');
+    return guest;
+  } catch (error) {
+    throw sqlState(error) === 'TP002' ? new Problem('visit_over') : error;
   }
 }

@@ -77,7 +77,7 @@ export class MilestonesRepository {
 
   /** How much the last inspection that saw a part had seen. */
   async lastPartialPercent(tx: Tx, milestoneId: string): Promise<number> {
-    const row = await tx.one<{ percent: number }>(`select percent from inspection where milestone_id = $1 and result = 'partial' order by at desc limit 1`, [milestoneId]);
+    const row = await tx.one<{ percent: number }>(`select percent from inspection where milestone_id = $1 and result = 'partial' and independent order by at desc limit 1`, [milestoneId]);
     return row?.percent ?? 0;
   }
 
@@ -144,5 +144,7 @@ const milestoneJson = /* sql */ `json_build_object('id', m.id, 'position', m.pos
   'provenAt', ${instant('m.proven_at')}, 'provenBy', ${personJson('m.proven_by')}, 'version', m.version)`;
 
 const inspectionsJson = /* sql */ `(select coalesce(json_agg(json_build_object('id', i.id, 'result', i.result, 'percent', i.percent, 'note', i.note,
-  'seenOn', i.seen_on, 'by', ${personJson('i.by_person')}, 'role', i.role, 'at', ${instant('i.at')}) order by i.at desc), '[]')
+  'seenOn', i.seen_on, 'by', ${personJson('i.by_person')}, 'role', i.role, 'independent', i.independent,
+  'guest', (select json_build_object('onBehalf', b.on_behalf, 'senderSide', l.sender_side, 'company', g.company, 'license', g.license)
+     from guest_inspection g join guest_link l on l.id = g.link_id join guest_link_inspector b on b.link_id = l.id where g.inspection_id = i.id), 'at', ${instant('i.at')}) order by i.at desc), '[]')
   from inspection i where i.milestone_id = m.id)`;

@@ -29,9 +29,14 @@ export class RecordRepository {
 
   /** Appends one entry, as the last statement but the answer: it locks the head of the chain. Returns the anchor to print. */
   async append(tx: Tx, entry: RecordEntry): Promise<RecordAnchor> {
-    const text = canonicalText({ act: entry.act, at: this.clock.now().toISOString(), by: entry.by, data: entry.data, v: 1 });
+    const text = this.text(entry);
     const row = await tx.one<RecordAnchor>('select seq, hash from app.append_record($1, $2, $3, $4)', [entry.firmId, entry.jobId, entry.chain ?? 'shared', text]);
     if (!row) throw new Error('The record did not answer.');
     return row;
+  }
+
+  /** The exact text of an entry, as it is hashed. */
+  text({ act, by, data }: Pick<RecordEntry, 'act' | 'by' | 'data'>): string {
+    return canonicalText({ act, at: this.clock.now().toISOString(), by, data, v: 1 });
   }
 }

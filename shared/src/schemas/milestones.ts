@@ -76,6 +76,12 @@ export const Inspection = z.object({
   seenOn: BusinessDate,
   by: Person,
   role: JobRole,
+  /** False where the firm itself sent whoever looked: kept, and no proof. */
+  independent: z.boolean(),
+  /** Whoever came by a link instead of an account, in their own words; null where erased. */
+  guest: z
+    .object({ onBehalf: z.enum(['lender', 'homeowner', 'town', 'firm']), senderSide: z.enum(['firm', 'lender', 'homeowner']), company: z.string().nullable(), license: z.string().nullable() })
+    .nullable(),
   at: Instant,
 });
 

@@ -24,6 +24,8 @@ export const permissions = {
   'milestone.claim': ['principal', 'manager', 'site'],
   'milestone.prove': ['homeowner', 'lender', 'inspector'],
   'milestone.reopen': ['principal', 'manager', 'homeowner', 'lender', 'inspector'],
+  'guest_link.read': [...office, 'homeowner', 'lender'],
+  'guest_link.send': ['principal', 'manager', 'homeowner', 'lender'],
   'photo.add': ['principal', 'manager', 'site', 'inspector', 'lender'],
   'photo.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
   // where a photo was taken, and its original
