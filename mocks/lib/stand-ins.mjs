@@ -13,7 +13,7 @@ export const storageStandIn = (port) => ({ S3_ENDPOINT: `http://127.0.0.1:${port
 /**
  * Starts the local stand-ins for what .env points at nothing real.
  * @param {import('./house.mjs').House} house
- * @param {{ ports: ReturnType<import('./settings.mjs').portsOf>, env: Record<string, string>, data: string }} options
+ * @param {{ ports: Partial<ReturnType<import('./settings.mjs').portsOf>>, env: Record<string, string>, data: string }} options
  */
 export async function startStandIns(house, { ports, env, data }) {
   const starting = [];
@@ -21,7 +21,7 @@ export async function startStandIns(house, { ports, env, data }) {
     const mail = { SMTP_PORT: String(ports.smtp.port), MAIL_PAGE_PORT: String(ports.mailPage.port), MAIL_DIR: path.join(data, 'mail') };
     starting.push(ready(house, 'mail server', ['mocks/mail/main.mjs'], mail));
   }
-  if (ports.stripe) {
+  if (ports.stripe && ports.web) {
     const stripe = {
       STRIPE_PORT: String(ports.stripe.port),
       STRIPE_DATA: path.join(data, 'stripe'),

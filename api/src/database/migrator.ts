@@ -49,6 +49,12 @@ export async function missingMigrations(applied: readonly AppliedMigration[]): P
   return missing;
 }
 
+/** Migrations that this build doesn't know. */
+export function unknownMigrations(applied: readonly string[]): string[] {
+  const known = new Set(filesOf().map(nameOf));
+  return applied.filter((name) => !known.has(name));
+}
+
 const filesOf = () => readdirSync(folder).filter((file) => NAME.test(file)).sort();
 
 async function sqlOf(file: string): Promise<string> {

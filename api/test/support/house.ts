@@ -87,6 +87,10 @@ export class House {
     return child;
   }
 
+  get postgresBin(): string {
+    return this.server.address.bin;
+  }
+
   get ownerUrl(): string {
     return this.server.url('tally_owner', this.database);
   }
@@ -120,6 +124,11 @@ export class House {
       `${letBack ? 'grant' : 'revoke'} connect on database :"name" ${letBack ? 'to' : 'from'} :"role"; select pg_terminate_backend(pid) from pg_stat_activity where usename = :'role' and datname = :'name'`,
       { name: this.database, role },
     );
+  }
+
+  /** Runs SQL as somebody for whom no rule holds. */
+  asSuper(sql: string): void {
+    this.server.psql(this.database, sql);
   }
 
   async kill(child: ChildProcess, signal: NodeJS.Signals = 'SIGKILL'): Promise<void> {
