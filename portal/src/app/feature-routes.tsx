@@ -13,6 +13,7 @@ export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
     { path: 'schedule', lazy: () => import('../features/schedule/pages/schedule-page.tsx') },
     { path: 'schedule/import', lazy: () => import('../features/schedule/pages/import-page.tsx') },
     { path: 'milestones/:milestoneId', lazy: () => import('../features/milestones/pages/milestone-page.tsx') },
+    { path: 'inspectors', lazy: () => import('../features/guest/pages/inspectors-page.tsx') },
     { path: 'changes', lazy: () => import('../features/changes/pages/changes-page.tsx') },
     { path: 'changes/new', lazy: () => import('../features/changes/pages/new-change-page.tsx') },
     { path: 'takeoff', lazy: () => import('../features/takeoff/pages/takeoff-page.tsx') },

@@ -8,9 +8,10 @@ import { SignedIn } from './signed-in.tsx';
 /** While the first page's code is on its way. */
 const Nothing = () => null;
 
-/** Sign-in stands alone; everything else needs a person; a job's pages stand beside its pole. */
+/** Sign-in and what a mailed link opens stand alone; everything else needs a person; a job's pages stand beside its pole. */
 export const router = createBrowserRouter([
   { path: '/sign-in', HydrateFallback: Nothing, lazy: () => import('../features/auth/pages/sign-in-page.tsx'), errorElement: <ErrorPage /> },
+  { path: '/guest', HydrateFallback: Nothing, lazy: () => import('../features/guest/pages/guest-page.tsx'), errorElement: <ErrorPage /> },
   {
     path: '/',
     HydrateFallback: Nothing,

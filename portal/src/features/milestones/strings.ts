@@ -40,6 +40,10 @@ export const strings = {
   plan: 'Save days',
   planSaved: 'The days are saved.',
   looks: 'Who looked',
+  byLink: { lender: 'the lender’s inspector', homeowner: 'the homeowner’s inspector', town: 'the town’s inspector', firm: 'asked by the builder' },
+  linkBy: { firm: 'by a link that the builder sent', lender: 'by a link that the lender sent', homeowner: 'by a link that the homeowner sent' },
+  noProof: 'Kept as a note: the builder chose who looked, so it proves nothing.',
+  sendLink: 'Ask an inspector by link',
   noLooks: 'Nobody from outside the firm has looked at it yet.',
   back: 'All milestones',
 } as const;

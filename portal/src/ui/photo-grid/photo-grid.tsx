@@ -1,4 +1,4 @@
-import type { Photo } from '@tallypole/shared/schemas/photos';
+import type { Photo, PhotoSize } from '@tallypole/shared/schemas/photos';
 import { lazy, Suspense, useState } from 'react';
 import { writtenInstant } from '../../lib/dates.ts';
 import { photoUrl } from '../../lib/milestones.ts';
@@ -12,10 +12,12 @@ export interface PhotoGridProps {
   /** What is on them, for who doesn't see them: the milestone's name. */
   subject: string;
   timeZone: string;
+  /** Where the pictures come from for somebody without an account. */
+  urlOf?: (photoId: string, size: PhotoSize) => string;
 }
 
 /** Photos as a grid; one opens with what is known about it. Those that are still being read or can't be say so in their place. */
-export function PhotoGrid({ jobId, photos, subject, timeZone }: PhotoGridProps) {
+export function PhotoGrid({ jobId, photos, subject, timeZone, urlOf = (photoId, size) => photoUrl(jobId, photoId, size) }: PhotoGridProps) {
   const [open, setOpen] = useState<number | null>(null);
   const shown = open === null ? undefined : photos[open];
   return (
@@ -25,7 +27,7 @@ export function PhotoGrid({ jobId, photos, subject, timeZone }: PhotoGridProps) 
           <li key={photo.id}>
             <button type="button" className={classes['tile']} onClick={() => setOpen(i)}>
               {photo.state === 'ready' ? (
-                <img src={photoUrl(jobId, photo.id, 'small')} alt={altOf(photo, subject, timeZone)} loading="lazy" decoding="async" />
+                <img src={urlOf(photo.id, 'small')} alt={altOf(photo, subject, timeZone)} loading="lazy" decoding="async" />
               ) : (
                 <span className={classes['blank']}>{photo.state === 'stored' ? 'Being read …' : 'Cannot be shown'}</span>
               )}
@@ -41,6 +43,7 @@ export function PhotoGrid({ jobId, photos, subject, timeZone }: PhotoGridProps) 
             alt={altOf(shown, subject, timeZone)}
             title={`${subject}, photo ${(open ?? 0) + 1} of ${photos.length}`}
             timeZone={timeZone}
+            largeUrl={urlOf(shown.id, 'large')}
             onClose={() => setOpen(null)}
             onMove={(step) => setOpen((at) => Math.min(photos.length - 1, Math.max(0, (at ?? 0) + step)))}
           />

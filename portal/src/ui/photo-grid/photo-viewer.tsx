@@ -2,7 +2,6 @@ import { Button, CloseButton, Modal } from '@mantine/core';
 import type { Photo } from '@tallypole/shared/schemas/photos';
 import type { KeyboardEvent, ReactNode } from 'react';
 import { writtenInstant } from '../../lib/dates.ts';
-import { photoUrl } from '../../lib/milestones.ts';
 import classes from './photo-grid.module.css';
 
 interface PhotoViewerProps {
@@ -11,12 +10,13 @@ interface PhotoViewerProps {
   alt: string;
   title: string;
   timeZone: string;
+  largeUrl: string;
   onClose: () => void;
   onMove: (step: 1 | -1) => void;
 }
 
 /** One photo large, with when, where and by whom, and what was found out about it. */
-export default function PhotoViewer({ jobId, photo, alt, title, timeZone, onClose, onMove }: PhotoViewerProps) {
+export default function PhotoViewer({ jobId, photo, alt, title, timeZone, largeUrl, onClose, onMove }: PhotoViewerProps) {
   const onKeyDown = (event: KeyboardEvent) => {
     if (event.key === 'ArrowRight') onMove(1);
     if (event.key === 'ArrowLeft') onMove(-1);
@@ -29,7 +29,7 @@ export default function PhotoViewer({ jobId, photo, alt, title, timeZone, onClos
           <CloseButton size="lg" aria-label="Close" onClick={onClose} />
         </div>
         {photo.state === 'ready' ? (
-          <img key={photo.id} src={photoUrl(jobId, photo.id, 'large')} alt={alt} width={photo.width ?? undefined} height={photo.height ?? undefined} />
+          <img key={photo.id} src={largeUrl} alt={alt} width={photo.width ?? undefined} height={photo.height ?? undefined} />
         ) : (
           <p className={classes['trouble']}>{photo.trouble ?? 'The picture arrived and is being read. It will be here in a moment.'}</p>
         )}

@@ -13,13 +13,21 @@ export const InspectionList = ({ inspections }: { inspections: readonly Inspecti
     <p className="quiet">{strings.noLooks}</p>
   ) : (
     <ul className={classes['looks']}>
-      {inspections.map(({ id, result, percent, by, role, seenOn, note }) => (
+      {inspections.map(({ id, result, percent, by, role, seenOn, note, independent, guest }) => (
         <li key={id}>
           <div>
-            <StateTag meaning={MEANING[result]}>{strings.inspected[result]}</StateTag> {formatRate(percent)} · {writtenDate(seenOn)} · {by.name}, {role}
+            <StateTag meaning={independent || result === 'failed' ? MEANING[result] : 'neutral'}>{strings.inspected[result]}</StateTag> {formatRate(percent)} · {writtenDate(seenOn)} · {by.name}
+            {guest ? lookedByLink(guest) : `, ${role}`}
           </div>
           {note ? <p>{note}</p> : null}
+          {independent || result === 'failed' ? null : <div className="quiet">{strings.noProof}</div>}
         </li>
       ))}
     </ul>
   );
+
+/** Who came without an account: from where, for whom, and who sent them. */
+function lookedByLink({ company, license, onBehalf, senderSide }: NonNullable<Inspection['guest']>): string {
+  const from = [company, license].filter((part) => part).join(', ');
+  return `${from ? `, ${from}` : ''}: ${strings.byLink[onBehalf]}, ${strings.linkBy[senderSide]}`;
+}

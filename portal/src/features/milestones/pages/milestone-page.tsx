@@ -40,6 +40,9 @@ export function Component() {
       {may(job.roles, 'milestone.prove') ? null : <Photos job={job} milestone={data} />}
       <Section title={strings.looks}>
         <InspectionList inspections={data.inspections} />
+        {data.state !== 'proven' && may(job.roles, 'guest_link.send') ? (
+          <div className={classes['acts']}><LinkButton to={`/jobs/${job.id}/inspectors?milestone=${data.id}`} variant="outline">{strings.sendLink}</LinkButton></div>
+        ) : null}
         {data.state === 'proven' && may(job.roles, 'milestone.reopen') ? <ReopenForm key={data.version} job={job} milestone={data} /> : null}
       </Section>
       {may(job.roles, 'milestone.plan') && data.state !== 'proven' ? <PlanForm key={`plan ${data.version}`} job={job} milestone={data} /> : null}
