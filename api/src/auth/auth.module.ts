@@ -1,7 +1,7 @@
 import { Module } from '@nestjs/common';
 import { PassportModule } from '@nestjs/passport';
 import { RateLimitGuard } from '../common/rate-limit.guard.ts';
-import { PeopleModule } from '../people/people.module.ts';
+import { InvitationAcceptanceModule } from '../people/invitation-acceptance.module.ts';
 import { AuthController } from './auth.controller.ts';
 import { AuthRepository } from './auth.repository.ts';
 import { AuthService } from './auth.service.ts';
@@ -9,7 +9,7 @@ import { JwtStrategy } from './jwt.strategy.ts';
 import { Presence } from './presence.ts';
 
 @Module({
-  imports: [PassportModule, PeopleModule],
+  imports: [PassportModule, InvitationAcceptanceModule],
   controllers: [AuthController],
   providers: [AuthService, AuthRepository, JwtStrategy, RateLimitGuard, Presence],
   exports: [Presence],

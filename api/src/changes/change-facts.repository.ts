@@ -47,7 +47,9 @@ const REVIEWS = /* sql */ `(select coalesce(json_agg(json_build_object('id', r.i
 const SIGNERS = /* sql */ `(select coalesce(json_agg(json_build_object('personId', h.person_id, 'name', coalesce(p.name, p.email), 'email', p.email,
     'signedAt', ${instant('s.at')}, 'typedName', s.typed_name, 'effectHash', s.effect_hash, 'documentSha256', s.document_sha256,
     'consentVersion', s.consent_version, 'fromAddress', s.from_address) order by h.created_at, h.person_id), '[]')
-  from (select person_id, created_at from job_member where job_id = j.id and role = 'homeowner' and ended_at is null) h
+  from (select m.person_id, m.created_at from job_member m where m.job_id = j.id and m.role = 'homeowner' and (m.ended_at is null
+    -- whoever signed stays named, also after they left
+    or exists (select 1 from change_signature k where k.change_id = c.id and k.person_id = m.person_id and k.superseded_at is null))) h
   join person p on p.id = h.person_id
   left join change_signature s on s.change_id = c.id and s.person_id = h.person_id and s.superseded_at is null)`;
 

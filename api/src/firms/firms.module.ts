@@ -1,4 +1,5 @@
 import { Module } from '@nestjs/common';
+import { FirmInvitationsService } from './firm-invitations.service.ts';
 import { FirmsController } from './firms.controller.ts';
 import { FirmsRepository } from './firms.repository.ts';
 import { FirmsService } from './firms.service.ts';
@@ -8,5 +9,5 @@ import { MembersService } from './members.service.ts';
 import { PricingController } from './pricing.controller.ts';
 import { PricingService } from './pricing.service.ts';
 
-@Module({ controllers: [FirmsController, MembersController, PricingController], providers: [FirmsService, MembersService, PricingService, FirmsRepository, MembersRepository] })
+@Module({ controllers: [FirmsController, MembersController, PricingController], providers: [FirmsService, FirmInvitationsService, MembersService, PricingService, FirmsRepository, MembersRepository] })
 export class FirmsModule {}

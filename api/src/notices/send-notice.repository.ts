@@ -49,7 +49,7 @@ async function load(tx: Tx, noticeId: string) {
   if (!notice) throw new Problem('not_found');
   const paper = await tx.one<{ name: string; storage_key: string }>('select name, storage_key from document where id = $1', [notice.data['documentId'] ?? null]);
   if (notice.to_email !== null) return { notice, paper, to: { name: notice.to_name ?? '', address: notice.to_email } };
-  const person = await tx.one<{ email: string; name: string | null }>('select email, name from app.mail_address($1)', [notice.person_id]);
+  const person = await tx.one<{ email: string; name: string | null }>('select email, name from app.notice_receiver($1)', [noticeId]);
   return { notice, paper, to: person ? { name: person.name ?? '', address: person.email } : undefined };
 }
 

@@ -9,6 +9,8 @@ const noticeKinds = [
   'invitation',
   'firm-invitation',
   'invitation-accepted',
+  'access-ended',
+  'person-left',
   'change-to-review',
   'change-issued',
   'change-partly-signed',

@@ -4,7 +4,7 @@ import { Clock } from '../common/clock.ts';
 import { UnitOfWork, type Actor, type Tx } from '../common/unit-of-work.ts';
 import { NoticeRepository } from '../notices/notice.repository.ts';
 import { RecordRepository } from '../record/record.repository.ts';
-import { PeopleRepository, type AcceptedInvitation } from './people.repository.ts';
+import { InvitationsRepository, type AcceptedInvitation } from './invitations.repository.ts';
 import { roleNames } from './role-names.ts';
 
 /** A person who has proven an address takes up what was sent to it. Repeatable: what is accepted isn't open any more. */
@@ -12,7 +12,7 @@ import { roleNames } from './role-names.ts';
 export class InvitationAcceptance {
   constructor(
     private readonly work: UnitOfWork,
-    private readonly repository: PeopleRepository,
+    private readonly repository: InvitationsRepository,
     private readonly record: RecordRepository,
     private readonly notices: NoticeRepository,
     private readonly clock: Clock,

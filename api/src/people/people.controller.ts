@@ -9,23 +9,25 @@ import type { Actor } from '../common/unit-of-work.ts';
 import { PeopleService } from './people.service.ts';
 
 @ApiTags('people')
-@Controller('jobs/:jobId')
+@Controller()
 export class PeopleController {
   constructor(private readonly people: PeopleService) {}
 
-  @Get('people') @Route('people.read', 'read') @ApiOkResponse({ standardSchema: S.JobPeople })
+  @Get('jobs/:jobId/people') @Route('people.read', 'read') @ApiOkResponse({ standardSchema: S.JobPeople })
   list(@CurrentActor() actor: Actor, @Param('jobId', { schema: Id }) jobId: string): Promise<S.JobPeople> {
     return this.people.people(actor, jobId);
   }
 
-  @Post('invitations') @Route('people.invite', 'write') @ApiIdempotencyKey() @ApiCreatedResponse({ standardSchema: S.JobPeople })
-  async invite(
-    @CurrentActor() actor: Actor,
-    @Param('jobId', { schema: Id }) jobId: string,
-    @Body({ schema: S.Invite }) body: S.Invite,
-    @IdempotencyKey() key: string,
-    @Res({ passthrough: true }) response: Response,
+  @Post('jobs/:jobId/people/:personId/remove') @Route('people.remove', 'write') @ApiIdempotencyKey() @ApiCreatedResponse({ standardSchema: S.JobPeople })
+  async remove(
+    @CurrentActor() actor: Actor, @Param('jobId', { schema: Id }) jobId: string, @Param('personId', { schema: Id }) personId: string, @IdempotencyKey() key: string,
+    @Body({ schema: S.RemovePerson }) body: S.RemovePerson, @Res({ passthrough: true }) response: Response,
   ): Promise<S.JobPeople> {
-    return answer(response, await this.people.invite(actor, jobId, body, key));
+    return answer(response, await this.people.remove(actor, jobId, personId, body, key));
+  }
+
+  @Get('invitations/:invitationId') @Route('signed_in', 'read') @ApiOkResponse({ standardSchema: S.MyInvitation })
+  invitation(@CurrentActor() actor: Actor, @Param('invitationId', { schema: Id }) invitationId: string): Promise<S.MyInvitation> {
+    return this.people.myInvitation(actor, invitationId);
   }
 }

@@ -10,11 +10,13 @@ const office = ['principal', 'manager', 'books'] as const;
 export const permissions = {
   'firm.read': firm,
   'firm.invite': ['principal'],
+  'firm.members': ['principal'],
   'firm.pricing': ['principal', 'manager'],
   'job.create': ['principal', 'manager'],
   'job.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
   'people.read': [...firm, 'homeowner', 'lender'],
   'people.invite': ['principal', 'manager'],
+  'people.remove': ['principal', 'manager'],
   'record.read': [...office, 'homeowner', 'lender'],
   'money.read': [...office, 'homeowner', 'lender'],
   'schedule_of_values.import': ['principal', 'manager', 'books'],
