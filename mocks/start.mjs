@@ -36,8 +36,9 @@ try {
   );
   await build(house.say, watch ? ['api'] : ['api', 'portal'], house.watchOver);
   const env = environment(settings, ports, pg);
-  await prepareDatabase(pg, env, settings);
+  // the demo keeps its pictures where files are kept
   await startStandIns(house, { ports, env, data });
+  await prepareDatabase(pg, env, settings);
   const start = () => {
     house.service('web server', ['--enable-source-maps', 'api/dist/web.js'], { env, mayEnd: watch });
     house.service('worker', ['--enable-source-maps', 'api/dist/worker.js'], { env, mayEnd: watch });

@@ -16,7 +16,7 @@ await startOrExplain(async () => {
   const logger = rootLogger(configuration.LOG_LEVEL);
   const app = await NestFactory.createApplicationContext(WorkerModule, { logger: new PinoLogger(logger), abortOnError: false });
   const mailer = new Mailer(configuration.SMTP_URL, configuration.MAIL_FROM);
-  const sweep = await DeadWorkerSweep.connect(configuration.QUEUE_URL);
+  const sweep = new DeadWorkerSweep(configuration.QUEUE_URL);
   const runner = await run({
     connectionString: configuration.QUEUE_URL,
     concurrency: 4,

@@ -29,6 +29,8 @@ export const problems = {
   too_many_tries: { status: 429, title: 'Too many tries. Wait a little and try again.' },
   failed: { status: 500, title: 'Sorry, something went wrong on our side. Nothing was changed.' },
   busy: { status: 503, title: 'The system is busy. Try again in a moment; nothing was changed.' },
+  unclear: { status: 503, title: 'We cannot tell whether this went through. Send it again: it will not be done twice.' },
+  no_room: { status: 507, title: 'There is no room for files at the moment. Nothing was kept.' },
   payments_unavailable: { status: 503, title: 'Payments cannot be started just now. Nothing was charged.' },
 } as const satisfies Record<string, { status: number; title: string }>;
 

@@ -3,7 +3,7 @@ import type { Request, Response } from 'express';
 import { InvalidInput } from '@tallypole/shared/arithmetic';
 import { problems, type ProblemBody, type ProblemCode } from '@tallypole/shared/problems';
 import { Problem } from './problem.ts';
-import { problemOfSqlState, sqlState } from './sql-state.ts';
+import { isConnectionLost, problemOfSqlState, sqlState } from './sql-state.ts';
 
 const CODE_OF_STATUS: Readonly<Record<number, ProblemCode>> = {
   401: 'not_signed_in',
@@ -45,7 +45,7 @@ function asProblem(error: unknown): Problem {
   const state = sqlState(error);
   const code = state === undefined ? undefined : problemOfSqlState[state];
   if (code) return new Problem(code);
-  if ((error as { name?: string }).name === 'SequelizeConnectionAcquireTimeoutError') return new Problem('busy');
+  if (isConnectionLost(error)) return new Problem('busy');
   if (isBodyError(error)) return new Problem(error.status === 413 ? 'file_too_large' : 'malformed_request');
   return new Problem('failed');
 }

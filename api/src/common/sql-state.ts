@@ -24,3 +24,13 @@ export const problemOfSqlState: Readonly<Record<string, ProblemCode>> = {
   TP002: 'not_signed_in',
   TP030: 'wrong_state',
 };
+
+const LOST_STATES = new Set(['57P01', '57P02', '57P03', '08000', '08001', '08003', '08006', 'ECONNREFUSED', 'ECONNRESET', 'EPIPE', 'ETIMEDOUT']);
+/** What pg says, without a code, of a connection that broke or fell silent. */
+const LOST_WORDS = /connection terminated|not queryable|query read timeout|timeout expired|client was closed/i;
+
+/** Whether an error says that the connection to the database is gone or silent: then nobody knows what became of the last statement. */
+export function isConnectionLost(error: unknown): boolean {
+  const { name, message, parent } = error as { name?: string; message?: string; parent?: { message?: string } };
+  return LOST_STATES.has(sqlState(error) ?? '') || (name?.startsWith('SequelizeConnection') ?? false) || LOST_WORDS.test(parent?.message ?? message ?? '');
+}

@@ -6,7 +6,7 @@ import type { Role } from '@tallypole/shared/schemas/roles';
 import { requireRole } from './access.ts';
 import { Clock } from './clock.ts';
 import { Problem } from './problem.ts';
-import { sqlState } from './sql-state.ts';
+import { isConnectionLost, sqlState } from './sql-state.ts';
 
 /** Who acts: a person in a session, and since when they have proven to be present. */
 export interface Actor {
@@ -108,11 +108,20 @@ export class UnitOfWork {
   }
 
   private async transact<T>(pool: Sequelize, begin: (tx: Tx) => Promise<void>, work: (tx: Tx) => Promise<T>): Promise<T> {
-    return await pool.transaction(async (transaction) => {
-      const tx = new Tx(pool, transaction);
-      await begin(tx);
-      return await work(tx);
-    });
+    let done = false;
+    try {
+      return await pool.transaction(async (transaction) => {
+        const tx = new Tx(pool, transaction);
+        await begin(tx);
+        const result = await work(tx);
+        done = true;
+        return result;
+      });
+    } catch (error) {
+      // only the commit was left, and its answer never came
+      if (done && pool === this.writing && isConnectionLost(error)) throw new Problem('unclear');
+      throw error;
+    }
   }
 }
 

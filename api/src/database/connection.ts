@@ -25,6 +25,8 @@ export function connectionOptions(url: string, poolSize: number): SequelizeModul
     password: decodeURIComponent(password),
     database: pathname.slice(1),
     logging: false,
+    // a server that vanished without a word must not keep anybody waiting: a little longer than it gives a statement itself
+    dialectOptions: { connectionTimeoutMillis: 5_000, query_timeout: 12_000, keepAlive: true, keepAliveInitialDelayMillis: 10_000 },
     pool: { max: poolSize, idle: 10_000, acquire: 8_000 },
     define: { underscored: true, timestamps: false },
     autoLoadModels: false,

@@ -50,7 +50,7 @@ export class UploadReceiver {
       return answered;
     } catch (error) {
       // what can't be forgotten now stays behind unseen; the sender hears what was wrong with the form
-      if (error instanceof Problem) await this.storage.remove(storageKey).catch(() => undefined);
+      if (error instanceof Problem && error.code !== 'unclear') await this.storage.remove(storageKey).catch(() => undefined);
       throw error;
     }
   }

@@ -9,6 +9,7 @@ import { MailSink } from './mail-sink.ts';
 
 const api = path.join(import.meta.dirname, '../..');
 let made = 0;
+type Connection = ReturnType<typeof connect>;
 
 export interface ProcessOptions {
   env?: Record<string, string>;
@@ -30,16 +31,15 @@ export class House {
   readonly mail = new MailSink();
   readonly env: Record<string, string>;
   readonly database: string;
-  private readonly server = connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]);
   /** For files of this house; gone with it. */
   readonly folder = mkdtempSync(path.join(tmpdir(), 'tally-test-'));
   private readonly children: ChildProcess[] = [];
   private owner: Promise<pg.Client> | undefined;
 
-  private constructor() {
+  private constructor(private readonly server: Connection, template: string) {
     made += 1;
     this.database = `t_${process.pid}_${made}`;
-    this.server.createDatabase(this.database, process.env['TEST_TEMPLATE'] ?? '');
+    this.server.createDatabase(this.database, template);
     this.env = {
       PATH: process.env['PATH'] ?? '',
       NODE_ENV: 'test',
@@ -59,8 +59,10 @@ export class House {
     };
   }
 
-  static async open(env: Record<string, string> = {}): Promise<House> {
-    const house = new House();
+  /** On the server of the tests, or on one of its own. */
+  static async open(env: Record<string, string> = {}, own?: { server: Connection; template: string }): Promise<House> {
+    const { server, template } = own ?? { server: connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]), template: process.env['TEST_TEMPLATE'] ?? '' };
+    const house = new House(server, template);
     await house.mail.start();
     Object.assign(house.env, { SMTP_URL: `smtp://127.0.0.1:${house.mail.port}` }, env);
     return house;
@@ -97,7 +99,7 @@ export class House {
 
   /** Runs SQL as the owner, who sees everything. */
   async sql<T extends pg.QueryResultRow>(text: string, values: unknown[] = []): Promise<T[]> {
-    this.owner ??= connected(this.ownerUrl);
+    this.owner ??= connected(this.ownerUrl).then((client) => client.on('error', () => (this.owner = undefined)));
     return (await (await this.owner).query<T>(text, values)).rows;
   }
 

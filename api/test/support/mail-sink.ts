@@ -6,11 +6,11 @@ export class MailSink {
   readonly mails: ParsedMail[] = [];
   /** Refuses every mail while set, as a server that is down for maintenance would. */
   refusing = false;
-  private readonly server: SMTPServer;
+  private server = this.make();
   port = 0;
 
-  constructor() {
-    this.server = new SMTPServer({
+  private make(): SMTPServer {
+    const server = new SMTPServer({
       disabledCommands: ['AUTH', 'STARTTLS'],
       onData: (stream, _session, done) => {
         if (this.refusing) {
@@ -25,13 +25,20 @@ export class MailSink {
       },
     });
     // a worker that a test kills leaves its connection half-way
-    this.server.on('error', () => undefined);
+    server.on('error', () => undefined);
+    return server;
   }
 
   async start(): Promise<void> {
-    await new Promise<void>((listening) => this.server.listen(0, '127.0.0.1', listening));
+    await new Promise<void>((listening) => this.server.listen(this.port, '127.0.0.1', listening));
     const address = this.server.server.address();
     this.port = typeof address === 'object' && address ? address.port : 0;
+  }
+
+  /** Comes back on its port after a stop; what it got before is kept. */
+  async startAgain(): Promise<void> {
+    this.server = this.make();
+    await this.start();
   }
 
   to(address: string): ParsedMail[] {
