@@ -1,10 +1,7 @@
-import { Button } from '@mantine/core';
 import { useQueryClient } from '@tanstack/react-query';
-import type { GuestLink, GuestLinkState } from '@tallypole/shared/schemas/guest-links';
-import { useState } from 'react';
+import type { GuestLink, GuestLinks, GuestLinkState } from '@tallypole/shared/schemas/guest-links';
 import { writtenInstant } from '../../../lib/dates.ts';
-import { useIdempotencyKey } from '../../../lib/idempotency-key.ts';
-import { FailureState } from '../../../ui/page.tsx';
+import { ActButton } from '../../../ui/act-button.tsx';
 import { StateTag, type Meaning } from '../../../ui/state-tag.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { actOnLink, linksQuery } from '../api/guest-links.ts';
@@ -42,29 +39,17 @@ export const LinkList = ({ jobId, links, timeZone, maySend }: { jobId: string; l
 
 function LinkActs({ jobId, link }: { jobId: string; link: GuestLink }) {
   const queries = useQueryClient();
-  const [busy, setBusy] = useState<'again' | 'revoke' | null>(null);
-  const [failure, setFailure] = useState<unknown>(null);
-  const keys = { again: useIdempotencyKey(`link-again:${link.id}:${link.sentAt}`), revoke: useIdempotencyKey(`link-revoke:${link.id}:${link.sentAt}`) };
-  const perform = async (act: 'again' | 'revoke') => {
-    setBusy(act);
-    setFailure(null);
-    try {
-      queries.setQueryData(linksQuery(jobId).queryKey, await actOnLink(jobId, link.id, act, keys[act].key));
-      keys[act].spend();
-      toast(act === 'again' ? strings.againDone : strings.revoked);
-    } catch (error) {
-      setFailure(error);
-    } finally {
-      setBusy(null);
-    }
+  const done = (message: string) => (links: GuestLinks) => {
+    queries.setQueryData(linksQuery(jobId).queryKey, links);
+    toast(message);
   };
+  const about = link.name;
   return (
-    <>
-      {failure === null ? null : <FailureState error={failure} />}
-      <div className={classes['acts']}>
-        <Button variant="outline" loading={busy === 'again'} onClick={() => void perform('again')} aria-label={`${strings.sendAgain}: ${link.name}`}>{strings.sendAgain}</Button>
-        {link.state === 'revoked' ? null : <Button variant="subtle" loading={busy === 'revoke'} onClick={() => void perform('revoke')} aria-label={`${strings.revoke}: ${link.name}`}>{strings.revoke}</Button>}
-      </div>
-    </>
+    <div className={classes['acts']}>
+      <ActButton scope={`link-again:${link.id}:${link.sentAt}`} label={strings.sendAgain} about={about} send={(key) => actOnLink(jobId, link.id, 'again', key)} onDone={done(strings.againDone)} />
+      {link.state === 'revoked' ? null : (
+        <ActButton scope={`link-revoke:${link.id}:${link.sentAt}`} label={strings.revoke} about={about} variant="subtle" send={(key) => actOnLink(jobId, link.id, 'revoke', key)} onDone={done(strings.revoked)} />
+      )}
+    </div>
   );
 }

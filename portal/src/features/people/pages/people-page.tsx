@@ -1,16 +1,20 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import { may } from '@tallypole/shared/schemas/permissions';
+import { jobRoles, type JobRole } from '@tallypole/shared/schemas/roles';
 import type { JobPeople } from '@tallypole/shared/schemas/people';
-import { writtenInstant } from '../../../lib/dates.ts';
 import { useJob } from '../../../lib/job.ts';
+import { queryClient } from '../../../lib/query-client.ts';
+import { ActButton } from '../../../ui/act-button.tsx';
 import { DataTable } from '../../../ui/data-table.tsx';
+import { LinkButton } from '../../../ui/link-button.tsx';
 import { PageHead, Section } from '../../../ui/page.tsx';
-import { StateTag } from '../../../ui/state-tag.tsx';
-import { peopleQuery } from '../api/people.ts';
+import { toast } from '../../../ui/toast.ts';
+import { peopleQuery, removePerson } from '../api/people.ts';
+import { InvitationList } from '../components/invitation-list.tsx';
 import { InviteForm } from '../components/invite-form.tsx';
+import { strings } from '../strings.ts';
 
 type Person = JobPeople['people'][number];
-type Invitation = JobPeople['invitations'][number];
 
 export function Component() {
   const job = useJob();
@@ -18,39 +22,64 @@ export function Component() {
   const firmSees = data.people.some(({ email }) => email !== null);
   return (
     <>
-      <PageHead title="People">
-        <p className="quiet">Who is on {job.name}, and as what.</p>
+      <PageHead title={strings.title}>
+        <p className="quiet">{strings.explain(job.name)}</p>
       </PageHead>
       <DataTable
-        caption="People on the job"
+        caption={strings.people}
         columns={[
-          { key: 'name', head: 'Name', cell: (person: Person) => person.name },
-          { key: 'role', head: 'Role', cell: (person: Person) => person.role },
-          ...(firmSees ? [{ key: 'email', head: 'Address', cell: (person: Person) => person.email }] : []),
+          { key: 'name', head: strings.name, cell: (person: Person) => person.name },
+          { key: 'role', head: strings.role, cell: (person: Person) => strings.roles[person.role] },
+          ...(firmSees ? [{ key: 'email', head: strings.address, cell: (person: Person) => person.email }] : []),
+          ...(may(job.roles, 'people.remove') ? [{ key: 'acts', head: strings.acts, cell: (person: Person) => <Remove jobId={job.id} person={person} /> }] : []),
         ]}
         rows={data.people}
         rowKey={(person) => `${person.personId} ${person.role}`}
       />
       {data.invitations.length > 0 ? (
-        <Section title="Invited, not here yet">
-          <DataTable
-            caption="Open invitations"
-            columns={[
-              { key: 'name', head: 'Name', cell: (open: Invitation) => open.name },
-              { key: 'role', head: 'Role', cell: (open: Invitation) => open.role },
-              { key: 'email', head: 'Address', cell: (open: Invitation) => open.email },
-              { key: 'until', head: 'Good until', cell: (open: Invitation) => <StateTag meaning="waits">{writtenInstant(open.expiresAt, job.timeZone)}</StateTag> },
-            ]}
-            rows={data.invitations}
-            rowKey={(open) => open.id}
-          />
+        <Section title={strings.invited}>
+          <InvitationList jobId={job.id} invitations={data.invitations} timeZone={job.timeZone} mayAct={may(job.roles, 'people.invite')} />
         </Section>
       ) : null}
       {may(job.roles, 'people.invite') ? (
-        <Section title="Invite somebody">
+        <Section title={strings.invite}>
           <InviteForm jobId={job.id} key={data.invitations.length + data.people.length} />
         </Section>
       ) : null}
+      {may(job.roles, 'guest_link.read') ? (
+        <Section title={strings.inspectors}>
+          <p className="quiet" style={{ marginBottom: 12 }}>{strings.inspectorsExplain}</p>
+          <LinkButton to={`/jobs/${job.id}/inspectors`} variant="outline">{strings.inspectors}</LinkButton>
+        </Section>
+      ) : null}
     </>
+  );
+}
+
+/** People of the firm leave it on the firm's own page. */
+function Remove({ jobId, person }: { jobId: string; person: Person }) {
+  const role = jobRoles.find((known): known is JobRole => known === person.role);
+  if (!role) return null;
+  const { personId, name } = person;
+  const text = (
+    <>
+      <p>{strings.removeText}</p>
+      {role === 'homeowner' ? <p style={{ marginTop: 12 }}>{strings.removeHomeowner}</p> : null}
+    </>
+  );
+  return (
+    <ActButton
+      scope={`remove:${jobId}:${personId}:${role}`}
+      label={strings.remove}
+      about={`${name}, ${role}`}
+      variant="subtle"
+      send={(key) => removePerson(jobId, personId, { role }, key)}
+      onDone={(people) => {
+        queryClient.setQueryData(peopleQuery(jobId).queryKey, people);
+        void queryClient.invalidateQueries({ queryKey: ['jobs', jobId] });
+        toast(strings.removed(name));
+      }}
+      question={{ title: strings.removeTitle(name, strings.roles[role]), text, confirm: strings.removeConfirm(name) }}
+    />
   );
 }
