@@ -47,7 +47,7 @@ describe.each([
   let storage: FileStorage;
   beforeAll(async () => {
     place = await open();
-    storage = storageOf(place.settings);
+    storage = await storageOf(place.settings);
   });
   afterAll(() => place.close());
 
@@ -117,7 +117,7 @@ describe('a bucket with troubles', () => {
   let storage: FileStorage;
   beforeAll(async () => {
     place = await bucket();
-    storage = storageOf(place.settings);
+    storage = await storageOf(place.settings);
   });
   beforeEach(() => standIn.faultsOver());
   afterAll(() => place.close());
@@ -136,7 +136,7 @@ describe('a bucket with troubles', () => {
     ['the name of the key', { S3_ACCESS_KEY_ID: 'somebody-else' }],
     ['the bucket', { S3_BUCKET: 'other-bucket' }],
   ])('refuses others who have %s wrong, for reading and writing', async (_what, wrong) => {
-    const stranger = storageOf(readStorageSettings({ ...standIn.env, ...wrong }));
+    const stranger = await storageOf(readStorageSettings({ ...standIn.env, ...wrong }));
     const at = key();
     await storage.put(at, Readable.from([Buffer.from('ours')]));
     const before = await place.left();

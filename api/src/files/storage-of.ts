@@ -1,11 +1,11 @@
 import type { StorageSettings } from '../common/configuration.ts';
 import type { FileStorage } from './file-storage.ts';
 import { LocalDiskStorage } from './local-disk-storage.ts';
-import { S3Storage } from './s3-storage.ts';
 
-/** The storage that the configuration names. */
-export function storageOf(settings: StorageSettings): FileStorage {
+/** The storage that the configuration names. The client for buckets is large: it is loaded only where there is one. */
+export async function storageOf(settings: StorageSettings): Promise<FileStorage> {
   if (settings.STORAGE === 'disk') return new LocalDiskStorage(settings.FILES_DIR);
+  const { S3Storage } = await import('./s3-storage.ts');
   return new S3Storage({
     endpoint: settings.S3_ENDPOINT,
     region: settings.S3_REGION,

@@ -12,7 +12,7 @@ await command(async () => {
   const { to } = options({ to: { type: 'string' } });
   if (!to) throw new Refusal('Say where the backup goes: npm run backup -- --to <folder>');
   const owners = ownersOf(process.env);
-  const storage = storageOf(readStorageSettings(process.env));
+  const storage = await storageOf(readStorageSettings(process.env));
   const backup = new BackupFolder(path.resolve(to));
   // what pg_dump writes, too, is for its maker alone
   process.umask(0o077);

@@ -6,5 +6,5 @@ import { checkHouse } from './house-check.ts';
 
 await command(async () => {
   options({});
-  return await checkHouse(ownersOf(process.env), storageOf(readStorageSettings(process.env)));
+  return await checkHouse(ownersOf(process.env), await storageOf(readStorageSettings(process.env)));
 });

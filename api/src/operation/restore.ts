@@ -15,7 +15,7 @@ await command(async () => {
   const { from, over } = options({ from: { type: 'string' }, over: { type: 'boolean' } });
   if (!from) throw new Refusal('Say where the backup is: npm run restore -- --from <folder>');
   const owners = ownersOf(process.env);
-  const storage = storageOf(readStorageSettings(process.env));
+  const storage = await storageOf(readStorageSettings(process.env));
   const backup = new BackupFolder(path.resolve(from));
   const { manifest, files } = await backup.verified();
   const unknown = unknownMigrations(manifest.migrations);
