@@ -7,7 +7,7 @@ import { pinoHttp } from 'pino-http';
 const REPEATS_INPUT = /^2[23]/;
 
 /** An error for the log: no SQL, no parameters, no bodies, since they hold what people typed. */
-function safeError(error: unknown): object {
+export function safeError(error: unknown): object {
   const { name, message, code, stack, parent, cause, details } = error as SomeError;
   const state = parent?.code ?? code;
   const repeats = typeof state === 'string' && REPEATS_INPUT.test(state);
