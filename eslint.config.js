@@ -68,7 +68,7 @@ const sqlInRepositories = {
 const local = { rules: { 'kebab-case-file': kebabCaseFile, 'no-cents-arithmetic': noCentsArithmetic, 'sql-in-repositories': sqlInRepositories } };
 
 /** Packages that have one door each, and the one file that may open it. */
-const doors = { stripe: 'api/src/payments/stripe-client.ts', nodemailer: 'api/src/notices/mailer.ts' };
+const doors = { stripe: 'api/src/payments/stripe-client.ts', nodemailer: 'api/src/notices/mailer.ts', '@aws-sdk': 'api/src/files/s3-storage.ts' };
 const closed = (open) => ({
   'no-restricted-imports': ['error', {
     patterns: Object.entries(doors).filter(([, file]) => file !== open).map(([name, file]) => ({ group: [name, `${name}/*`], message: `Only ${file} talks to ${name}.` })),
