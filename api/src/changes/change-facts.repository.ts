@@ -18,7 +18,7 @@ const EARNED = /* sql */ `(select coalesce(-sum(l.amount_cents), 0)::bigint from
 
 const BILLED = /* sql */ `(select coalesce(-sum(l.amount_cents), 0)::bigint from ledger_line l where l.job_id = j.id and l.account = 'billed_work')`;
 
-const JOB = /* sql */ `json_build_object('id', j.id, 'firmId', j.firm_id, 'firmName', f.name, 'name', j.name,
+const JOB = /* sql */ `json_build_object('id', j.id, 'firmId', j.firm_id, 'firmName', f.name, 'siteSeesPrices', f.site_sees_prices, 'name', j.name,
   'place', j.street || ', ' || j.city || ', ' || j.state || ' ' || j.zip, 'timeZone', j.time_zone,
   'contractSumCents', j.contract_sum_cents, 'changesApprovedCents', j.changes_approved_cents, 'completeBy', j.complete_by, 'dayKind', j.day_kind,
   'daysApproved', j.days_approved, 'homeownersSign', j.homeowners_sign, 'earnedToDateCents', ${EARNED}, 'billedToDateCents', ${BILLED},

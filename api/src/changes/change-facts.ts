@@ -34,6 +34,8 @@ export interface ChangeFacts {
     id: string;
     firmId: string;
     firmName: string;
+    /** Whether the firm lets its site people see prices. */
+    siteSeesPrices: boolean;
     name: string;
     place: string;
     timeZone: string;

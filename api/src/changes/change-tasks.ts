@@ -9,6 +9,7 @@ import { mayChange } from '@tallypole/shared/schemas/change-states';
 import { Clock } from '../common/clock.ts';
 import { UnitOfWork, type Tx } from '../common/unit-of-work.ts';
 import { DocumentsRepository } from '../documents/documents.repository.ts';
+import { LetterheadRepository } from '../documents/letterhead.repository.ts';
 import { joinPapers, renderPaper } from '../documents/pdf.ts';
 import { FILE_STORAGE, type FileStorage } from '../files/file-storage.ts';
 import { newStorageKey } from '../files/storage-key.ts';
@@ -41,6 +42,7 @@ class ChangePapers {
   private readonly repository: ChangesRepository;
   private readonly papers: ChangePapersRepository;
   private readonly documents: DocumentsRepository;
+  private readonly letterheads: LetterheadRepository;
   private readonly mails: ChangeMails;
   private readonly record: RecordRepository;
   private readonly clock: Clock;
@@ -52,6 +54,7 @@ class ChangePapers {
     this.repository = app.get(ChangesRepository);
     this.papers = app.get(ChangePapersRepository);
     this.documents = app.get(DocumentsRepository);
+    this.letterheads = app.get(LetterheadRepository);
     this.mails = app.get(ChangeMails);
     this.record = app.get(RecordRepository);
     this.clock = app.get(Clock);
@@ -63,7 +66,8 @@ class ChangePapers {
     if (!facts || !mayChange(facts.change.state, 'sign_last') || facts.document) return;
     const { text, hash } = effectOf(facts);
     const pictures = await Promise.all(facts.photos.map(async ({ storageKey }) => await buffer(await this.storage.get(storageKey))));
-    const stored = await this.store(job, await renderPaper(changePaper(facts, this.clock.today(facts.job.timeZone), pictures)), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
+    const letterhead = await this.work.writeAsFirm(job.firmId, (tx) => this.letterheads.find(tx, job.firmId));
+    const stored = await this.store(job, await renderPaper({ ...changePaper(facts, this.clock.today(facts.job.timeZone), pictures), letterhead }), `${changeName(facts.change)}, ${facts.job.name}.pdf`);
     await this.work.writeAsFirm(job.firmId, async (tx, systemPerson) => {
       const now = await this.lock(tx, job);
       if (!mayChange(now.change.state, 'sign_last') || now.document) return;

@@ -10,6 +10,9 @@ import { costOf } from './pricing-draft.ts';
 const inFirm = (roles: readonly Role[]): boolean => roles.some((role) => (firmRoles as readonly Role[]).includes(role));
 const seesCost = (roles: readonly Role[]): boolean => inFirm(roles) && may(roles, 'money.read');
 
+/** Who sees what a change costs the homeowners: whoever sees the job's money, and the site where the firm has said so. */
+export const seesPrices = (roles: readonly Role[], siteSeesPrices: boolean): boolean => may(roles, 'money.read') || (siteSeesPrices && roles.includes('site'));
+
 /** Which states somebody may see: outside the firm a change exists from the day it is sent out; the designer sees it in review. */
 export function visibleStates(roles: readonly Role[]): ChangeState[] {
   if (inFirm(roles)) return [...changeStates];
@@ -20,7 +23,8 @@ export function visibleStates(roles: readonly Role[]): ChangeState[] {
 export function changeView(facts: ChangeFacts, roles: readonly Role[], { personId, today }: { personId: string; today: string }): Change {
   const { change, job } = facts;
   const { effectHash, closedReason, createdBy: _createdBy, chargedCents, ...row } = change;
-  const prices = may(roles, 'money.read');
+  const money = may(roles, 'money.read');
+  const prices = seesPrices(roles, job.siteSeesPrices);
   // once signed, what was agreed is read from the paper; before, it follows from the job as it is
   const open = change.state !== 'approved';
   return {
@@ -30,10 +34,10 @@ export function changeView(facts: ChangeFacts, roles: readonly Role[], { personI
     scope: facts.scope,
     photos: facts.photos.map(({ id, note, width, height }) => ({ id, note, width, height })),
     reviews: facts.reviews,
-    ...(prices && open ? openEffect(facts, today) : { effect: prices ? agreedEffect(facts) : null, steps: null }),
-    effectHash: prices ? effectHash : null,
-    document: paper(prices, facts.document),
-    signedDocument: paper(prices, facts.signedDocument),
+    ...(money && open ? openEffect(facts, today) : { effect: money ? agreedEffect(facts) : null, steps: null }),
+    effectHash: money ? effectHash : null,
+    document: paper(money, facts.document),
+    signedDocument: paper(money, facts.signedDocument),
     signers: facts.signers.map(({ personId: id, name, signedAt }) => ({ personId: id, name, signedAt, me: id === personId })),
     signersNeeded: job.homeownersSign,
     closedReason,

@@ -22,6 +22,11 @@ export interface PricedDraft extends Omit<DraftChange, 'terms' | 'id'> {
 
 @Injectable()
 export class ChangesRepository {
+  /** Whether the firm lets its site people see prices. */
+  async siteSeesPrices(tx: Tx, jobId: string): Promise<boolean> {
+    return (await tx.one<{ sees: boolean }>('select f.site_sees_prices as sees from job j join firm f on f.id = j.firm_id where j.id = $1', [jobId]))?.sees ?? false;
+  }
+
   async lockJob(tx: Tx, jobId: string): Promise<void> {
     await tx.rows('select id from job where id = $1 for no key update', [jobId]);
   }

@@ -2,7 +2,7 @@ import { Injectable } from '@nestjs/common';
 import { sum } from '@tallypole/shared/money';
 import { mayChange } from '@tallypole/shared/schemas/change-states';
 import type { Change, ChangeCost, ChangeList, DraftChange, EditChange } from '@tallypole/shared/schemas/changes';
-import { may, type Permission } from '@tallypole/shared/schemas/permissions';
+import type { Permission } from '@tallypole/shared/schemas/permissions';
 import type { Role } from '@tallypole/shared/schemas/roles';
 import { requireOnJob } from '../common/access.ts';
 import { Clock } from '../common/clock.ts';
@@ -10,7 +10,7 @@ import { CommandRunner, type Answered } from '../common/command-runner.ts';
 import { Problem } from '../common/problem.ts';
 import { UnitOfWork, type Actor, type Tx } from '../common/unit-of-work.ts';
 import { RecordRepository } from '../record/record.repository.ts';
-import { changeView, visibleStates } from './change-view.ts';
+import { changeView, seesPrices, visibleStates } from './change-view.ts';
 import type { ChangeFacts } from './change-facts.ts';
 import { ChangeFactsRepository } from './change-facts.repository.ts';
 import { ChangesRepository, type OfChange } from './changes.repository.ts';
@@ -30,7 +30,7 @@ export class ChangesService {
   list(actor: Actor, jobId: string): Promise<ChangeList> {
     return this.work.readJob(actor, jobId, 'change.read', async (tx, roles) => {
       const rows = await this.repository.list(tx, jobId, visibleStates(roles));
-      const prices = may(roles, 'money.read');
+      const prices = seesPrices(roles, roles.includes('site') && (await this.repository.siteSeesPrices(tx, jobId)));
       const approved = rows.filter(({ state }) => state === 'approved');
       return {
         items: rows.map((row) => (prices ? row : { ...row, chargedCents: null })),

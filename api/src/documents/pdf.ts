@@ -2,6 +2,7 @@ import { createRequire } from 'node:module';
 import { PDFDocument } from 'pdf-lib';
 import pdfmake from 'pdfmake';
 import type { Content, TDocumentDefinitions } from 'pdfmake/interfaces.js';
+import { letterheadOf, type Letterhead } from './letterhead.ts';
 
 const resolve = (file: string) => createRequire(import.meta.url).resolve(file);
 // whole fonts, so that every name prints; the web fonts are cut by script
@@ -19,6 +20,8 @@ pdfmake.setLocalAccessPolicy((file) => fontFiles.has(file));
 
 export interface Paper {
   title: string;
+  /** Who sends it, at the top of its first page. */
+  letterhead?: Letterhead | undefined;
   /** Printed at the top of every page: firm, job. */
   head: string;
   /** Printed at the foot beside the page number. */
@@ -30,7 +33,7 @@ const GRAPHITE = '#25282c';
 const PENCIL = '#5d636a';
 
 /** A paper on letter as PDF, in our type; nothing is fetched. */
-export async function renderPaper({ title, head, foot, content }: Paper): Promise<Buffer> {
+export async function renderPaper({ title, letterhead, head, foot, content }: Paper): Promise<Buffer> {
   const definition: TDocumentDefinitions = {
     pageSize: 'LETTER',
     pageMargins: [64, 74, 64, 64],
@@ -45,7 +48,7 @@ export async function renderPaper({ title, head, foot, content }: Paper): Promis
     },
     header: { text: head, style: 'small', margin: [64, 34, 64, 0] },
     footer: (page, pages) => ({ columns: [{ text: foot }, { text: `Page ${page} of ${pages}`, alignment: 'right', width: 80 }], style: 'small', margin: [64, 20, 64, 0] }),
-    content,
+    content: letterhead ? [letterheadOf(letterhead), ...content] : content,
   };
   return await pdfmake.createPdf(definition).getBuffer();
 }

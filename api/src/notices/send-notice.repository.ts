@@ -29,7 +29,9 @@ export interface SendSettings {
 /** Worker: mails one notice of the outbox. It is marked as sent after the mail server took it; a crash in between may send it again, under the same Message-ID. */
 export async function sendNotice(work: UnitOfWork, mailer: Mailer, { publicUrl, storage }: SendSettings, job: NoticeJob): Promise<void> {
   const found = await work.writeAsFirm(job.firmId, (tx) => load(tx, job.noticeId));
-  if (!found || found.notice.sent_at !== null || !found.to) return;
+  if (!found || found.notice.sent_at !== null) return;
+  // whoever it was meant for has left, and nobody takes their place: it is done, so that its text goes when its time is over
+  if (!found.to) return await settle(work, job);
   const { notice, to, paper } = found;
   const attachments = paper ? [{ filename: paper.name, content: await buffer(await storage.get(paper.storage_key)) }] : undefined;
   await mailer.send(renderMail(notice.kind, { ...notice.data, sender: notice.firm_name, name: notice.data['name'] ?? to.name, email: notice.data['email'] ?? to.address }), {
@@ -40,6 +42,10 @@ export async function sendNotice(work: UnitOfWork, mailer: Mailer, { publicUrl, 
     ...(attachments ? { attachments } : {}),
     ...replyTo(notice.data),
   });
+  await settle(work, job);
+}
+
+async function settle(work: UnitOfWork, job: NoticeJob): Promise<void> {
   await work.writeAsFirm(job.firmId, (tx) => tx.rows('update notice set sent_at = now() where id = $1 and sent_at is null', [job.noticeId]));
 }
 

@@ -6,6 +6,7 @@ import { changeTasks } from '../changes/change-tasks.ts';
 import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
 import { UnitOfWork } from '../common/unit-of-work.ts';
 import { FILE_STORAGE, type FileStorage } from '../files/file-storage.ts';
+import { firmTasks } from '../firms/firm-tasks.ts';
 import { guestTasks } from '../guest-links/guest-tasks.ts';
 import type { Mailer } from '../notices/mailer.ts';
 import { sendNotice } from '../notices/send-notice.repository.ts';
@@ -25,6 +26,7 @@ export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
     ...paymentTasks(app),
     ...photoTasks(app),
     ...changeTasks(app),
+    ...firmTasks(app),
     ...guestTasks(app, mailer),
     send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
     send_notice: (payload) => sendNotice(work, mailer, { publicUrl: configuration.PUBLIC_URL, storage: app.get<FileStorage>(FILE_STORAGE) }, NoticeJob.parse(payload)),

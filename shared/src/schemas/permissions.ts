@@ -11,6 +11,7 @@ export const permissions = {
   'firm.read': firm,
   'firm.invite': ['principal'],
   'firm.members': ['principal'],
+  'firm.settings': ['principal'],
   'firm.pricing': ['principal', 'manager'],
   'job.create': ['principal', 'manager'],
   'job.read': [...firm, 'homeowner', 'lender', 'inspector', 'designer'],
