@@ -18,8 +18,6 @@ const noFunction: Record<string, string> = {
   'WE-F1': 'fees are what the processor reports with each payment; they are recorded, never computed',
   'WE-F2': 'the processor\'s own package checks signatures in the API; the stand-in that signs is tested against it with bad, stale and missing ones',
   'WE-G2': 'HMAC is Node\'s own, used by the API alone: a test here would test Node',
-  'WE-G3': 'people sign in by a mailed code; no codes by time are made or checked',
-  'WE-G4': 'people sign in by a mailed code; no codes by counter are made or checked',
   'WE-G5': 'the record is a chain of entries, not a tree; only the hash of nothing is common to both (WE-G1)',
   'WE-I2': 'deadlines for rescinding a loan are the lender\'s; no calendar here works on Saturdays',
   'WE-J1': 'colors are measured in the portal, where its pages are checked for contrast',

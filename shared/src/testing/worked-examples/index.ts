@@ -1,4 +1,5 @@
 import { changes } from './changes.ts';
+import { codes } from './codes.ts';
 import { due } from './due.ts';
 import type { Example } from './example.ts';
 import { framing } from './framing.ts';
@@ -7,4 +8,4 @@ import { payments } from './payments.ts';
 import { proof } from './proof.ts';
 import { vouchers } from './vouchers.ts';
 
-export const computed: readonly Example[] = [...due, ...vouchers, ...payments, ...changes, ...funding, ...proof, ...framing];
+export const computed: readonly Example[] = [...due, ...vouchers, ...payments, ...changes, ...funding, ...proof, ...framing, ...codes];
