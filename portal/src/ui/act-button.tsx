@@ -46,17 +46,25 @@ export function ActButton<Answer>({ scope, label, about, send, onDone, variant =
       </Button>
       {question ? null : failed}
       {question && asking ? (
-        <Modal opened onClose={() => setAsking(false)} title={question.title} closeButtonProps={{ 'aria-label': 'Close' }} centered>
-          <div className={classes['question']}>
-            <div>{question.text}</div>
-            {failed}
-            <div>
-              <Button color="oxide" loading={busy} onClick={() => void perform()}>
-                {question.confirm}
-              </Button>
-            </div>
-          </div>
-        </Modal>
+        // its parts one by one: the header that comes with the whole would be a second banner of the page
+        <Modal.Root opened onClose={() => setAsking(false)} centered>
+          <Modal.Overlay />
+          <Modal.Content>
+            <Modal.Body className={classes['question']}>
+              <div className={classes['questionHead']}>
+                <Modal.Title>{question.title}</Modal.Title>
+                <Modal.CloseButton size="lg" aria-label="Close" />
+              </div>
+              <div>{question.text}</div>
+              {failed}
+              <div>
+                <Button color="oxide" loading={busy} onClick={() => void perform()}>
+                  {question.confirm}
+                </Button>
+              </div>
+            </Modal.Body>
+          </Modal.Content>
+        </Modal.Root>
       ) : null}
     </>
   );
