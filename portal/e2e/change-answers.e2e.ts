@@ -38,7 +38,7 @@ describe('what people answer to a change', () => {
   it('no, with a reason, from a phone and by keyboard; the firm reads why', async () => {
     const change = await issueChange(lent, await startChange(lent));
     const ann = await Someone.at(browser, house, url, lent.ann.email, phone);
-    await ann.signIn(pageOf(change));
+    await ann.enter(pageOf(change));
     await ann.page.getByRole('button', { name: 'Decline, and say why' }).focus();
     await ann.page.keyboard.press('Enter');
     await ann.page.getByLabel('Why').focus();
@@ -49,7 +49,7 @@ describe('what people answer to a change', () => {
     expect(await ann.page.getByRole('button', { name: /^Sign for/ }).count()).toBe(0);
     expect((await house.mail.wait(lent.principal.email, /Change 1 .* was declined/)).text).toContain('We would rather keep the money.');
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
-    await builder.signIn(pageOf(change));
+    await builder.enter(pageOf(change));
     await builder.sees('We would rather keep the money.');
     await builder.sees('Make a revision');
     for (const someone of [ann, builder]) expect(someone.troubles).toEqual([]);
@@ -58,7 +58,7 @@ describe('what people answer to a change', () => {
   it('yes, to a price that was altered meanwhile: refused, and led to what holds now', async () => {
     const change = await issueChange(lent, await startChange(lent));
     const ann = await Someone.at(browser, house, url, lent.ann.email, phone);
-    await ann.signIn(pageOf(change));
+    await ann.enter(pageOf(change));
     await agree(ann, 'Ann Moss');
     const terms = { mode: 'margin', marginRate: 2_000, laborBurdenRate: 0, tax: { on: 'materials', rate: 0 }, deducts: 'keep', flatFeeCents: 0, insuranceRate: 0 } as const;
     const revision = made<Change>(await lent.principal.post(changeAt(lent, change.id, 'revisions'), changeDraft(lent, { terms, termsReason: 'Priced by margin.' })));
@@ -77,7 +77,7 @@ describe('what people answer to a change', () => {
   it('yes, in two tabs with the same form: signed once', async () => {
     const change = await issueChange(lent, await startChange(lent));
     const ben = await Someone.at(browser, house, url, lent.ben.email, desk);
-    await ben.signIn(pageOf(change));
+    await ben.enter(pageOf(change));
     await agree(ben, 'Ben Moss');
     const tab = await ben.context.newPage();
     await tab.goto(`${url}${pageOf(change)}`);
@@ -96,7 +96,7 @@ describe('what people answer to a change', () => {
     const email = `lou-${v7()}@firm.example`;
     made(await lent.principal.post(`/firms/${lent.firmId}/invitations`, { id: v7(), email, name: 'Lou Ferris', role: 'site' }));
     const lou = await Someone.at(browser, house, url, email, phone);
-    await lou.signIn(`/jobs/${lent.job.id}/changes`);
+    await lou.enter(`/jobs/${lent.job.id}/changes`);
     await lou.sees('Refused: build as drawn');
     await lou.sees('Not yet');
     if (shots) await lou.shot(`${shots}/site-log-360.png`);
@@ -114,12 +114,12 @@ describe('what people answer to a change', () => {
     const designer = await join(lent.principal, lent.job.id, 'designer', 'Ada Finch');
     const change = await startChange(lent, { structural: true });
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
-    await builder.signIn(pageOf(change));
+    await builder.enter(pageOf(change));
     await builder.press('Ask for a review');
     await builder.sees('In review');
     const mail = await house.mail.wait(designer.email, /touches the structure: please review it/);
     const ada = await Someone.at(browser, house, url, designer.email, desk);
-    await ada.signIn(new URL(/https?:\/\/\S+changes\S+/.exec(mail.text ?? '')?.[0] ?? '').pathname);
+    await ada.enter(new URL(/https?:\/\/\S+changes\S+/.exec(mail.text ?? '')?.[0] ?? '').pathname);
     await ada.sees('28 ea');
     expect(await ada.text()).not.toContain('$');
     const letter = path.join(house.env['FILES_DIR'] ?? '', '../letter.pdf');
@@ -142,7 +142,7 @@ describe('what people answer to a change', () => {
 
   it('the firm sets how it prices, and the next change is priced by it', async () => {
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
-    await builder.signIn(`/firms/${lent.firmId}/pricing`);
+    await builder.enter(`/firms/${lent.firmId}/pricing`);
     await builder.page.getByLabel('Marked up by').selectOption('margin');
     await builder.fill('Margin', '100');
     await builder.press('Keep these terms');

@@ -31,7 +31,7 @@ describe('a change, from its price to the last signature', () => {
 
   it('is priced at a desk, reviewed, sent out, and signed by both homeowners on their phones', async () => {
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
-    await builder.signIn(`/jobs/${lent.job.id}/changes`);
+    await builder.enter(`/jobs/${lent.job.id}/changes`);
     await builder.follow('Price a change');
     await builder.fill('What it is, in a few words', 'Deeper joists in the great room');
     await builder.fill('Why, in plain words', 'The great room spans farther than first drawn. Deeper joists keep the floor from bouncing.');
@@ -101,7 +101,7 @@ describe('a change, from its price to the last signature', () => {
     await ann.sees('It holds once Ben Moss has signed too.');
 
     const ben = await Someone.at(browser, house, url, lent.ben.email, { ...phone, scheme: 'dark' });
-    await ben.signIn(new URL(link).pathname);
+    await ben.enter(new URL(link).pathname);
     await ben.fill('Type your name to sign', 'Ben Moss');
     await ben.page.getByLabel(/I agree to sign this change electronically/).check();
     await shoot(ben, 'decide-360-dark');

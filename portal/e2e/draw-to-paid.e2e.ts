@@ -63,7 +63,7 @@ describe('a draw in a browser, from draft to paid', () => {
   it('is drafted, adjusted and sent; approved by both; funded; paid through the payment page; and shows the same cents everywhere', async () => {
     const draws = `/jobs/${lent.job.id}/draws`;
     const office = await at(lent.principal, desk);
-    await office.signIn(draws);
+    await office.enter(draws);
     await office.sees('A draw is drafted from what is proven');
     await look(office, 'draws-empty');
     await office.page.getByLabel('Work through', { exact: true }).fill('11/30/2026');
@@ -91,7 +91,7 @@ describe('a draw in a browser, from draft to paid', () => {
     const drawPath = new URL(office.page.url()).pathname;
 
     const ann = await at(lent.ann, phone);
-    await ann.signIn(drawPath);
+    await ann.enter(drawPath);
     await ann.sees('What was built since the last draw');
     await away(lent.ann.email);
     await look(ann, 'draw-to-approve');
@@ -102,7 +102,7 @@ describe('a draw in a browser, from draft to paid', () => {
     await ann.sees('Waits for Ben Moss.');
 
     const ben = await at(lent.ben, desk);
-    await ben.signIn(drawPath);
+    await ben.enter(drawPath);
     await ben.press('Object to “Floor joists”');
     await ben.page.getByLabel('Reason').fill('Two joists are cracked.');
     await look(ben, 'draw-objecting');
@@ -112,7 +112,7 @@ describe('a draw in a browser, from draft to paid', () => {
     await look(ben, 'draw-approved');
 
     const lender = await at(lent.lender, desk);
-    await lender.signIn('/lending');
+    await lender.enter('/lending');
     await lender.sees('$107,500.00 of it was seen in place');
     await look(lender, 'lending');
     await lender.follow('Look at the proof');
@@ -165,7 +165,7 @@ describe('a draw in a browser, from draft to paid', () => {
   it('lets the principal set up payments at the payment service and come back', async () => {
     const firm = await principalWithFirm(house, url);
     const principal = await at(firm.principal, phone);
-    await principal.signIn('/payouts');
+    await principal.enter('/payouts');
     await principal.page.getByRole('button', { name: 'Set up payments' }).waitFor();
     await look(principal, 'payouts');
     await principal.press('Set up payments');

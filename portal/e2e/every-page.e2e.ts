@@ -92,7 +92,7 @@ describe('what every page rests on', () => {
 
   it('opens a band of the lying pole by a tap, its neighbor from there, and goes there by the second tap', async () => {
     const ben = await at(lent.ben.email, phone);
-    await ben.signIn(`/jobs/${lent.job.id}`);
+    await ben.enter(`/jobs/${lent.job.id}`);
     await ben.page.getByRole('link', { name: /^Foundation: / }).tap();
     await ben.page.locator('dl').getByText('$100,000.00').first().waitFor();
     await look(ben, 'strip-open');
@@ -107,7 +107,7 @@ describe('what every page rests on', () => {
   it('leads back after a session that ended in the middle of a form, with what was typed; nobody else finds it', async () => {
     const builder = await at(lent.principal.email, phone);
     const form = `/firms/${lent.firmId}/jobs/new`;
-    await builder.signIn(form);
+    await builder.enter(form);
     await builder.fill('Name of the job', '5 Sorrel Bend');
     await builder.fill('Contract sum as signed', '310,000');
     await builder.press('Choose from a calendar: Signed on');
@@ -148,7 +148,7 @@ describe('what every page rests on', () => {
 
   it('renews a session whose short token ran out without anybody noticing, in two tabs at once', async () => {
     const ann = await at(lent.ann.email, desk);
-    await ann.signIn(`/jobs/${lent.job.id}/people`);
+    await ann.enter(`/jobs/${lent.job.id}/people`);
     const second = await ann.context.newPage();
     await second.goto(`${url}/jobs/${lent.job.id}`);
     await second.getByText('Foundation is proven').first().waitFor();
@@ -169,7 +169,7 @@ describe('what every page rests on', () => {
 
   it('remembers dark over sign-out, and signs out of the server', async () => {
     const ben = await at(lent.ben.email, desk);
-    await ben.signIn(`/jobs/${lent.job.id}`);
+    await ben.enter(`/jobs/${lent.job.id}`);
     await ben.press('Ben Moss');
     await look(ben, 'person-menu');
     await ben.page.getByRole('button', { name: 'Dark', exact: true }).click();
@@ -187,7 +187,7 @@ describe('what every page rests on', () => {
     const id = readFileSync(path.join(dist, 'build-id.txt'), 'utf8');
     expect((await fetch(`${url}/api/health`)).headers.get('build-id')).toBe(id);
     const builder = await at(lent.principal.email, phone);
-    await builder.signIn(`/jobs/${lent.job.id}/people`);
+    await builder.enter(`/jobs/${lent.job.id}/people`);
     await builder.page.getByRole('heading', { name: 'People', level: 1 }).waitFor();
     await builder.context.setOffline(true);
     await builder.sees('No connection.');

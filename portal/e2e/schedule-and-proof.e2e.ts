@@ -27,7 +27,7 @@ describe('schedule of values, photos and proof in a browser', () => {
     const { principal, firmId } = await principalWithFirm(house, url);
     const job = await createJob(principal, firmId, { contractSumCents: 48_650_000 });
     const builder = await Someone.at(browser, house, url, principal.email, desk);
-    await builder.signIn(`/jobs/${job.id}`);
+    await builder.enter(`/jobs/${job.id}`);
     await builder.follow('Import the schedule of values');
     await builder.page.setInputFiles('input[type=file]', sample('schedule-one-line-short.xlsx'));
     await builder.sees('49 lines read from schedule-one-line-short.xlsx');
@@ -64,7 +64,7 @@ describe('schedule of values, photos and proof in a browser', () => {
     await smallSchedule(principal, job.id);
     const inspector = await join(principal, job.id, 'inspector', 'Ines Stone');
     const site = await Someone.at(browser, house, url, principal.email, phone);
-    await site.signIn(`/jobs/${job.id}/site`);
+    await site.enter(`/jobs/${job.id}/site`);
     await site.sees('Choose what you photograph.');
     expect([await site.axe(), await site.overflows()]).toEqual([[], false]);
     await site.page.locator('main').getByRole('link', { name: /Framing/ }).click();
@@ -91,7 +91,7 @@ describe('schedule of values, photos and proof in a browser', () => {
     const mail = await house.mail.wait(inspector.email, /Framing at 9 Larkspur Court is claimed/);
     const link = /https?:\/\/\S+\/milestones\/\S+/.exec(mail.text ?? '')?.[0] ?? '';
     const outside = await Someone.at(browser, house, url, inspector.email, desk);
-    await outside.signIn(new URL(link).pathname);
+    await outside.enter(new URL(link).pathname);
     await outside.sees('Say what you saw');
     const photo = outside.page.locator('main').getByRole('button', { name: /Joists, north side, taken November 12, 2026/ });
     await photo.first().waitFor();

@@ -24,7 +24,7 @@ describe('a floor, counted as drawn and as proposed', () => {
 
   it('becomes the lines of a change; a missing cost is asked for, a span beyond the screen is said', async () => {
     const builder = await Someone.at(browser, house, url, lent.principal.email, desk);
-    await builder.signIn(`/jobs/${lent.job.id}/changes/new`);
+    await builder.enter(`/jobs/${lent.job.id}/changes/new`);
     await builder.follow('Count a floor first');
     await builder.sees('Nothing differs yet');
     await builder.page.getByRole('group', { name: 'As proposed' }).getByLabel('Joists', { exact: true }).selectOption('2x12');
