@@ -1,7 +1,7 @@
 import type { NestExpressApplication } from '@nestjs/platform-express';
 import { SwaggerModule } from '@nestjs/swagger';
 import compression from 'compression';
-import type { NextFunction, Request, Response } from 'express';
+import express, { type NextFunction, type Request, type Response } from 'express';
 import helmet from 'helmet';
 import { existsSync, readFileSync } from 'node:fs';
 import path from 'node:path';
@@ -64,10 +64,12 @@ function buildIdOf(folder: string | undefined): string | undefined {
 
 /** The built portal: hashed assets for a year, the page itself never from a cache; unknown paths are the portal's own routes. */
 function servePortal(app: NestExpressApplication, folder: string): void {
-  app.useStaticAssets(folder, {
+  const files = express.static(folder, {
     index: false,
     setHeaders: (response: Response, file: string) => response.setHeader('Cache-Control', file.includes(`${path.sep}assets${path.sep}`) ? `public, max-age=${YEAR_SECONDS}, immutable` : 'no-cache'),
   });
+  // no file is looked for where the interface is asked
+  app.use((request: Request, response: Response, next: NextFunction) => (request.path.startsWith('/api') ? next() : void files(request, response, next)));
   app.use((request: Request, response: Response, next: NextFunction) => {
     if (request.method !== 'GET' || request.path.startsWith('/api') || path.extname(request.path) || !request.accepts('html')) {
       next();

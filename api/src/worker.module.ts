@@ -19,7 +19,7 @@ const workerConnection = (name?: string) =>
     inject: [CONFIGURATION],
     useFactory: (configuration: Configuration) => ({
       ...(name ? { name } : { models }),
-      ...connectionOptions(configuration.DATABASE_WORKER_URL, configuration.DATABASE_POOL),
+      ...connectionOptions(configuration.DATABASE_WORKER_URL, configuration.DATABASE_POOL, 'write'),
     }),
   });
 

@@ -1,6 +1,6 @@
 import pg from 'pg';
 import type { SequelizeModuleOptions } from '@nestjs/sequelize';
-import { PreparingClient } from './preparing-client.ts';
+import { PreparingClient, ReadingClient } from './preparing-client.ts';
 
 const INT8 = 20;
 // bigint columns hold cents and sequence numbers: give numbers, and refuse what a number can't hold exactly
@@ -14,11 +14,11 @@ const DATE = 1082;
 pg.types.setTypeParser(DATE, (text) => text);
 
 /** Sequelize's options for one of the two pools. */
-export function connectionOptions(url: string, poolSize: number): SequelizeModuleOptions {
+export function connectionOptions(url: string, poolSize: number, pool: 'read' | 'write'): SequelizeModuleOptions {
   const { hostname, port, username, password, pathname } = new URL(url);
   return {
     dialect: 'postgres',
-    dialectModule: { ...pg, Client: PreparingClient },
+    dialectModule: { ...pg, Client: pool === 'read' ? ReadingClient : PreparingClient },
     host: hostname,
     port: Number(port || 5432),
     username: decodeURIComponent(username),

@@ -9,12 +9,12 @@ import { models } from './models.ts';
   imports: [
     SequelizeModule.forRootAsync({
       inject: [CONFIGURATION],
-      useFactory: (configuration: Configuration) => ({ ...connectionOptions(configuration.DATABASE_WRITE_URL, configuration.DATABASE_POOL), models }),
+      useFactory: (configuration: Configuration) => ({ ...connectionOptions(configuration.DATABASE_WRITE_URL, configuration.DATABASE_POOL, 'write'), models }),
     }),
     SequelizeModule.forRootAsync({
       name: 'read',
       inject: [CONFIGURATION],
-      useFactory: (configuration: Configuration) => ({ name: 'read', ...connectionOptions(configuration.DATABASE_READ_URL, configuration.DATABASE_POOL) }),
+      useFactory: (configuration: Configuration) => ({ name: 'read', ...connectionOptions(configuration.DATABASE_READ_URL, configuration.DATABASE_POOL, 'read') }),
     }),
   ],
 })

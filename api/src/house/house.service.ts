@@ -20,10 +20,10 @@ export class HouseService {
   /** The pole and what waits for whom: what every page of a job shows. */
   house(actor: Actor, jobId: string): Promise<House> {
     return this.work.readJob(actor, jobId, 'job.read', async (tx, roles) => {
-      const facts = await this.repository.find(tx, jobId);
+      // sent together: the second doesn't wait for the first one's answer
+      const [facts, waits] = await Promise.all([this.repository.find(tx, jobId), this.waits.ofJob(tx, jobId, actor.personId)]);
       if (!facts) throw new Problem('not_found');
       const prices = may(roles, 'money.read');
-      const waits = await this.waits.ofJob(tx, jobId, actor.personId);
       const shown = waits.filter((wait) => prices || wait.kind === 'milestone_to_prove').map((wait) => (prices ? wait : { ...wait, cents: null }));
       const next = facts.milestones.find(({ state }) => state !== 'proven');
       return {

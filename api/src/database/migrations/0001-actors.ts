@@ -75,29 +75,34 @@ begin
   return who;
 end $$;
 
--- What an actor may reach is asked by every policy of a statement. In a read-only transaction nothing of it can change, so the first
--- answer is kept for the rest, under the actor's name; elsewhere it is asked anew, since the transaction itself may change it.
-create function app.kept(p_name text) returns uuid[] language plpgsql stable as $$
-declare kept text := current_setting('app.kept_' || p_name, true);
-begin
-  if current_setting('transaction_read_only') = 'off' or kept is null or not starts_with(kept, app.actor()::text) then return null; end if;
-  return substr(kept, 37)::uuid[];
-end $$;
-
+-- What an actor may reach is asked by every policy of a statement, twice for each table. So the first answer is kept for the rest of the
+-- transaction under the actor's name, in a setting that ends with it; whatever changes who belongs where forgets it. What policies call is
+-- plain SQL over that setting, which is put in the place of the call.
 create function app.keep(p_name text, p_ids uuid[]) returns uuid[] language plpgsql stable as $$
 begin
-  if current_setting('transaction_read_only') = 'on' then perform set_config('app.kept_' || p_name, app.actor() || p_ids::text, true); end if;
+  perform set_config('app.kept_' || p_name, app.actor() || p_ids::text, true);
   return p_ids;
 end $$;
 
-create function app.my_firms() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare me uuid := app.actor(); kept uuid[] := app.kept('firms');
+create function app.forget_kept() returns trigger language plpgsql as $$
 begin
-  if kept is not null then return kept; end if;
+  perform set_config('app.kept_firms', '', true), set_config('app.kept_jobs', '', true), set_config('app.kept_people', '', true);
+  return null;
+end $$;
+create trigger forget_kept after insert or update or delete on firm_member for each statement execute function app.forget_kept();
+
+create function app.find_my_firms() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor();
+begin
   return app.keep('firms', (select coalesce(array_agg(firm_id), '{}') from (
     select firm_id from firm_member where person_id = me
     union select system_of from person where id = me and system_of is not null) f));
 end $$;
+
+create function app.my_firms() returns uuid[] language sql stable as $$
+  select case when starts_with(current_setting('app.kept_firms', true), nullif(current_setting('app.actor', true), ''))
+    then substr(current_setting('app.kept_firms', true), 37)::uuid[] else app.find_my_firms() end
+$$;
 
 alter table firm_member enable row level security;
 alter table firm_member force row level security;
@@ -112,7 +117,7 @@ grant select on session to app_read, app_write;
 grant update (ended_at, present_at) on session to app_write;
 grant update (name) on person to app_write;
 revoke all on all functions in schema app from public;
-grant execute on function app.actor, app.my_firms, app.kept, app.keep to app_read, app_write, app_worker;
+grant execute on function app.actor, app.my_firms, app.find_my_firms, app.keep to app_read, app_write, app_worker;
 grant execute on function app.act_as to app_read, app_write;
 grant execute on function app.act_as_system to app_worker;
 `;

@@ -68,18 +68,23 @@ create unique index one_open_invitation on invitation (job_id, email, role) wher
 create index on invitation (email) where accepted_at is null and revoked_at is null;
 create index on invitation (job_id);
 
-create function app.my_jobs() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare me uuid := app.actor(); kept uuid[] := app.kept('jobs');
+create trigger forget_kept after insert or update or delete on job_member for each statement execute function app.forget_kept();
+
+create function app.find_my_jobs() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor();
 begin
-  if kept is not null then return kept; end if;
   return app.keep('jobs', (select coalesce(array_agg(distinct job_id), '{}') from job_member where person_id = me and ended_at is null));
 end $$;
 
+create function app.my_jobs() returns uuid[] language sql stable as $$
+  select case when starts_with(current_setting('app.kept_jobs', true), nullif(current_setting('app.actor', true), ''))
+    then substr(current_setting('app.kept_jobs', true), 37)::uuid[] else app.find_my_jobs() end
+$$;
+
 -- the people I share a firm or a job with, in either direction
-create function app.my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs(); kept uuid[] := app.kept('people');
+create function app.find_my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs();
 begin
-  if kept is not null then return kept; end if;
   return app.keep('people', (
     with reached as (select id, firm_id from job where firm_id = any(firms) or id = any(jobs))
     select coalesce(array_agg(distinct p), '{}') from (
@@ -87,6 +92,11 @@ begin
       union select m.person_id from firm_member m where m.firm_id = any(firms) or m.firm_id in (select firm_id from reached)
       union select m.person_id from job_member m where m.job_id in (select id from reached)) x));
 end $$;
+
+create function app.my_people() returns uuid[] language sql stable as $$
+  select case when starts_with(current_setting('app.kept_people', true), nullif(current_setting('app.actor', true), ''))
+    then substr(current_setting('app.kept_people', true), 37)::uuid[] else app.find_my_people() end
+$$;
 
 -- one trip instead of three: is the session alive, who acts, and as what on this job
 create function app.act_on_job(p_session uuid, p_person uuid, p_now timestamptz, p_job uuid) returns text[]
@@ -125,7 +135,7 @@ create policy firm_only on invitation using (firm_id = any((select app.my_firms(
 
 grant select on job, job_member, invitation to app_read, app_write, app_worker;
 grant insert, update on job, invitation to app_write, app_worker;
-revoke all on function app.my_jobs, app.my_people, app.act_on_job, app.my_roles from public;
-grant execute on function app.my_jobs, app.my_people, app.my_roles to app_read, app_write, app_worker;
+revoke all on function app.my_jobs, app.find_my_jobs, app.my_people, app.find_my_people, app.act_on_job, app.my_roles from public;
+grant execute on function app.my_jobs, app.find_my_jobs, app.my_people, app.find_my_people, app.my_roles to app_read, app_write, app_worker;
 grant execute on function app.act_on_job to app_read, app_write;
 `;

@@ -117,10 +117,9 @@ grant update (token_hash, mailed_at) on guest_link to app_worker;
 grant update (told_at) on guest_inspection to app_worker;
 
 -- the people I share a firm or a job with, in either direction; now also who was sent a link there
-create or replace function app.my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs(); kept uuid[] := app.kept('people');
+create or replace function app.find_my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs();
 begin
-  if kept is not null then return kept; end if;
   return app.keep('people', (
     with reached as (select id, firm_id from job where firm_id = any(firms) or id = any(jobs))
     select coalesce(array_agg(distinct p), '{}') from (

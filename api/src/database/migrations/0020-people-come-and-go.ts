@@ -102,10 +102,9 @@ create function app.record_in_all_jobs(p_firm uuid, p_text text) returns void la
   select app.append_record(firm_id, id, 'shared', p_text) from (select firm_id, id from job where firm_id = p_firm order by id) j
 $$;
 
-create or replace function app.my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
-declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs(); kept uuid[] := app.kept('people');
+create or replace function app.find_my_people() returns uuid[] language plpgsql stable security definer set search_path = public, pg_temp as $$
+declare me uuid := app.actor(); firms uuid[] := app.my_firms(); jobs uuid[] := app.my_jobs();
 begin
-  if kept is not null then return kept; end if;
   return app.keep('people', (
     with reached as (select id, firm_id from job where firm_id = any(firms) or id = any(jobs))
     select coalesce(array_agg(distinct p), '{}') from (
