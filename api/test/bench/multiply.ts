@@ -7,7 +7,7 @@ const UUID = /[0-9a-f]{8}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{4}-[0-9a-f]{12}/g;
 
 /**
  * Copies a firm with everything of it so many times, for measurements on much data: people stay, every other id becomes another one; a
- * number of copies share a firm. Triggers and foreign keys rest meanwhile, since the copied rows held once.
+ * number of copies share a firm, or all of them the first one (`perFirm` infinite). Triggers and foreign keys rest meanwhile, since the copied rows held once.
  */
 export async function multiply(house: House, firmId: string, copies: number, perFirm: number): Promise<void> {
   const server = connect(JSON.parse(process.env['TEST_PG'] ?? '{}') as Parameters<typeof connect>[0]);
@@ -18,14 +18,15 @@ export async function multiply(house: House, firmId: string, copies: number, per
     const people = new Set((await client.query<{ id: string }>('select id from person')).rows.map(({ id }) => id));
     const shared = new Set([firmId]);
     const tables = (await client.query<{ name: string }>(`select c.relname as name from pg_class c join pg_attribute a on a.attrelid = c.oid and a.attname = 'firm_id' where c.relkind = 'r' and c.relnamespace = 'public'::regnamespace`)).rows.map(({ name }) => name);
-    for (const name of ['firm', ...tables]) {
+    const sameFirm = perFirm === Number.POSITIVE_INFINITY;
+    for (const name of sameFirm ? tables : ['firm', ...tables]) {
       const columns = await plainColumns(client, name);
       const { rows } = await client.query<{ row: string }>(`select to_jsonb(t)::text as row from ${name} t where ${name === 'firm' ? 'id' : 'firm_id'} = $1`, [firmId]);
       // what belongs to the firm and to no job stands once in each copy of the firm
       const ofJobs = name !== 'firm' && (await hasJob(client, name));
       for (let copy = 1; copy <= copies; copy += 1) {
-        if (!ofJobs && (copy - 1) % perFirm !== 0) continue;
-        const another = (id: string): string => (people.has(id) ? id : hashed(`${id} ${shared.has(id) ? Math.floor((copy - 1) / perFirm) : copy}`));
+        if (!ofJobs && (sameFirm || (copy - 1) % perFirm !== 0)) continue;
+        const another = (id: string): string => (people.has(id) || (sameFirm && id === firmId) ? id : hashed(`${id} ${shared.has(id) ? Math.floor((copy - 1) / perFirm) : copy}`));
         const copied = rows.map(({ row }) => row.replace(UUID, another));
         await client.query(`insert into ${name} (${columns}) select ${columns} from jsonb_populate_recordset(null::${name}, $1::jsonb)`, [`[${copied.join(',')}]`]);
       }
