@@ -4,16 +4,15 @@ import type { CreateJob, JobRow } from '@tallypole/shared/schemas/jobs';
 import type { Tx } from '../common/unit-of-work.ts';
 import { JobModel } from './job.model.ts';
 
-export interface JobFacts extends Omit<JobRow, 'contractSumTodayCents'> {
+export interface JobFacts extends Omit<JobRow, 'contractSumTodayCents' | 'approvedChangesCents'> {
   timeZone: string;
-  contractSumCents: number;
   changesApprovedCents: number;
   daysApproved: number;
   terms: CreateJob['terms'];
   version: number;
 }
 
-export type JobRowFacts = Omit<JobRow, 'contractSumTodayCents'> & { contractSumCents: number; changesApprovedCents: number };
+export type JobRowFacts = Omit<JobRow, 'contractSumTodayCents' | 'approvedChangesCents'> & { changesApprovedCents: number };
 
 @Injectable()
 export class JobsRepository {

@@ -47,6 +47,8 @@ export class JobsService {
       const rows = await this.repository.list(tx, query.limit + 1, decodeCursor(query.cursor));
       const items = rows.slice(0, query.limit).map(({ contractSumCents, changesApprovedCents, ...row }) => ({
         ...row,
+        contractSumCents,
+        approvedChangesCents: changesApprovedCents,
         contractSumTodayCents: sum([contractSumCents, changesApprovedCents]),
       }));
       const last = items.at(-1);
@@ -60,6 +62,7 @@ export class JobsService {
     const { contractSumCents, changesApprovedCents, daysApproved, ...job } = facts;
     return {
       ...job,
+      contractSumCents,
       contractSumTodayCents: sum([contractSumCents, changesApprovedCents]),
       approvedChangesCents: changesApprovedCents,
       approvedDays: daysApproved,

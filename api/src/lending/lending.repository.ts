@@ -11,8 +11,6 @@ export type LendingFacts = Omit<LendingRow, 'blocker' | 'approvals' | 'dueCents'
   invited: number;
   sign: 'one' | 'all';
   dueCents: number;
-  loanCents: number;
-  sentCents: number;
 };
 
 @Injectable()

@@ -20,9 +20,9 @@ export class LendingService {
 }
 
 function rowOf(facts: LendingFacts): Lending['items'][number] {
-  const { approved, given, homeowners, invited, sign, loanCents, sentCents, lines, ...rest } = facts;
+  const { approved, given, homeowners, invited, sign, lines, ...rest } = facts;
   const seen = lines.map(([scheduledCents, workCents, seenRate]) => ({ scheduledCents, workCents, seenRate }));
   const row = { ...rest, provenCents: seenOfBilled(seen), billedCents: sum(seen.map(({ workCents }) => workCents)) };
   const needed = sign === 'one' ? 1 : homeowners + invited;
-  return { ...row, loanOpenCents: minus(loanCents, sentCents), approvals: { given: approved ? needed : given, needed }, blocker: blockerOf({ ...row, approved }) };
+  return { ...row, loanOpenCents: minus(rest.loanCents, rest.sentCents), approvals: { given: approved ? needed : given, needed }, blocker: blockerOf({ ...row, approved }) };
 }

@@ -36,3 +36,6 @@ const PAYMENT: Words<PaymentState> = {
 export const DrawTag = ({ state }: { state: DrawState }) => <StateTag meaning={DRAW[state].meaning}>{DRAW[state].words}</StateTag>;
 export const ReviewTag = ({ state }: { state: ReviewState }) => <StateTag meaning={REVIEW[state].meaning}>{`Lender: ${REVIEW[state].words.toLowerCase()}`}</StateTag>;
 export const PaymentTag = ({ state }: { state: PaymentState }) => <StateTag meaning={PAYMENT[state].meaning}>{PAYMENT[state].words}</StateTag>;
+
+/** The state of a payment in words, where a tag has no place. */
+export const paymentStateWords = (state: PaymentState): string => PAYMENT[state].words;

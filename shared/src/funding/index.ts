@@ -2,6 +2,8 @@ export { mapBudget } from './budget.ts';
 export type { MappedLine } from './budget.ts';
 export { dayCount } from './day-count.ts';
 export type { DayCountBasis } from './day-count.ts';
+export { fundableSteps, loanOpenSteps, receivedSteps } from './listed-steps.ts';
+export type { LoanOpenFigures, ReceivedFigures } from './listed-steps.ts';
 export { loanInBalance } from './loan-in-balance.ts';
 export type { InBalance, InBalanceInput } from './loan-in-balance.ts';
 export { loanInterest } from './loan-interest.ts';

@@ -2,7 +2,7 @@ export { MOST_LINES, MOST_MILESTONES, checkDrafts, readScheduled, sumProblem } f
 export type { DraftCheck, DraftField, DraftLine, DraftProblem, LineKind } from './draft.ts';
 export type { Cell, GridRow } from './grid.ts';
 export type { ColumnField } from './header.ts';
-export { phasesOf, scheduleSum } from './phases.ts';
+export { lineValue, phasesOf, scheduleSum } from './phases.ts';
 export type { Phase } from './phases.ts';
 export { proposeMilestones } from './propose-milestones.ts';
 export type { ProposedMilestone } from './propose-milestones.ts';

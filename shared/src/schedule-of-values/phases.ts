@@ -19,13 +19,14 @@ export interface Phase<L extends PhaseLine> {
 export function phasesOf<L extends PhaseLine>(lines: readonly L[]): Phase<L>[] {
   const byName = new Map<string, L[]>();
   for (const line of lines) byName.set(line.phase, [...(byName.get(line.phase) ?? []), line]);
-  return [...byName].map(([name, own]) => ({ name, lines: own, sum: sumOf(name, 'sum of its lines', own.map(asStep)) }));
+  return [...byName].map(([name, own]) => ({ name, lines: own, sum: sumOf(name, 'sum of its lines', own.map(lineValue)) }));
 }
 
 /** The whole schedule as the sum of its phases. */
 export const scheduleSum = (phases: readonly Phase<PhaseLine>[]): Step => sumOf('Schedule of values', 'sum of its phases', phases.map((phase) => phase.sum));
 
-const asStep = ({ id, number, description, scheduledCents }: PhaseLine): Step =>
+/** The value of one line, as it was imported or agreed in a change. */
+export const lineValue = ({ id, number, description, scheduledCents }: PhaseLine): Step =>
   given(number === '' ? description : `${number} ${description}`, money(scheduledCents), { record: 'line', id, label: description });
 
 function sumOf(label: string, rule: string, inputs: readonly Step[]): Step {

@@ -52,6 +52,9 @@ export const JobRow = z.object({
   name: z.string(),
   address: Address,
   contractSumTodayCents: z.int(),
+  /** What it is made of: as signed, and what changes added since. */
+  contractSumCents: z.int(),
+  approvedChangesCents: z.int(),
   completeBy: BusinessDate,
   createdAt: Instant,
 });
@@ -60,7 +63,6 @@ export const JobList = list(JobRow);
 export const Job = JobRow.extend({
   timeZone: z.string(),
   terms: ContractTerms,
-  approvedChangesCents: z.int(),
   approvedDays: z.int(),
   completionDate: BusinessDate,
   today: BusinessDate,

@@ -16,7 +16,9 @@ export const LendingRow = z.object({
   reviewState: z.enum(reviewStates),
   throughOn: BusinessDate,
   dueOn: BusinessDate.nullable(),
-  /** What the loan is asked for and not yet funded. */
+  /** What the loan is asked for, what of it was sent, and what is left. */
+  loanCents: z.int(),
+  sentCents: z.int(),
   loanOpenCents: z.int(),
   dueCents: z.int(),
   /** Proven and billed to date, by the lines of milestones. */

@@ -9,7 +9,7 @@ export const strings = {
   later: 'Not yet',
   none: 'No draw waits for you. When a builder sends one on a job that you lend for, it stands here with its proof.',
   noneToday: 'Nothing can be funded today.',
-  total: (sum: number) => `${formatMoney(sum)} in all`,
+  inAll: 'in all',
   due: (on: string) => `due ${on}`,
   seen: 'Seen',
   billed: 'Billed',

@@ -1,10 +1,13 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
+import { given, money } from '@tallypole/shared/arithmetic';
+import { signedSteps } from '@tallypole/shared/changes';
 import type { ChangeRow } from '@tallypole/shared/schemas/changes';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { Link } from 'react-router-dom';
 import { writtenDate } from '../../../lib/dates.ts';
 import { useJob } from '../../../lib/job.ts';
 import { DataTable, type Column } from '../../../ui/data-table.tsx';
+import { Figure } from '../../../ui/figure.tsx';
 import { LinkButton } from '../../../ui/link-button.tsx';
 import { MoneyChange } from '../../../ui/money.tsx';
 import { EmptyState, PageHead } from '../../../ui/page.tsx';
@@ -25,7 +28,7 @@ export function Component() {
     { key: 'where', head: 'Milestone', cell: (row) => row.milestoneName ?? 'The whole job' },
     ...(prices ? [{ key: 'until', head: 'Price holds until', cell: (row: ChangeRow) => (row.state === 'issued' || row.state === 'partly_signed' ? writtenDate(row.goodUntil) : '–') }] : []),
     { key: 'days', head: 'Days', right: true, cell: (row) => row.days },
-    ...(prices ? [{ key: 'price', head: 'Price', right: true, cell: (row: ChangeRow) => <MoneyChange cents={row.chargedCents ?? 0} /> }] : []),
+    ...(prices ? [{ key: 'price', head: 'Price', right: true, cell: (row: ChangeRow) => <Price row={row} /> }] : []),
   ];
   return (
     <>
@@ -40,9 +43,17 @@ export function Component() {
       {data.items.length === 0 ? <EmptyState>{strings.empty}</EmptyState> : <DataTable caption="Changes" columns={columns} rows={data.items} rowKey={({ id }) => id} />}
       {data.approvedCents === null || data.items.length === 0 ? null : (
         <p style={{ marginTop: 16 }}>
-          Signed so far: <MoneyChange cents={data.approvedCents} /> and {data.approvedDays === 1 ? '1 day' : `${data.approvedDays} days`}.
+          Signed so far: <Figure label="Signed so far" steps={signedSteps(data.items.filter(({ state }) => state === 'approved').map(logged))}><MoneyChange cents={data.approvedCents} /></Figure> and {data.approvedDays === 1 ? '1 day' : `${data.approvedDays} days`}.
         </p>
       )}
     </>
   );
+}
+
+const logged = (row: ChangeRow) => ({ id: row.id, label: changeName(row), chargedCents: row.chargedCents ?? 0 });
+
+/** The price opens to the change it stands in, where its lines open in turn. */
+function Price({ row }: { row: ChangeRow }) {
+  const { id, label, chargedCents } = logged(row);
+  return <Figure label={`${label}, price`} steps={given(label, money(chargedCents), { record: 'change', id, label })}><MoneyChange cents={chargedCents} /></Figure>;
 }

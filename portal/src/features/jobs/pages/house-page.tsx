@@ -1,7 +1,7 @@
 import { useSuspenseQuery } from '@tanstack/react-query';
 import type { House } from '@tallypole/shared/schemas/house';
 import type { Job } from '@tallypole/shared/schemas/jobs';
-import { given, money, step } from '@tallypole/shared/arithmetic';
+import { contractSumSteps } from '@tallypole/shared/changes';
 import { may } from '@tallypole/shared/schemas/permissions';
 import { writtenDate } from '../../../lib/dates.ts';
 import { houseQuery } from '../../../lib/house.ts';
@@ -41,10 +41,7 @@ export function Component() {
 }
 
 function Facts({ job }: { job: Job }) {
-  const arithmetic = step('Contract sum today', 'as signed + changes approved', money(job.contractSumTodayCents), [
-    given('As signed', money(job.terms.contractSumCents), { record: 'job', id: job.id, label: job.name }),
-    given('Changes approved', money(job.approvedChangesCents)),
-  ]);
+  const arithmetic = contractSumSteps({ id: job.id, name: job.name, asSignedCents: job.contractSumCents, changesApprovedCents: job.approvedChangesCents });
   return (
     <p className="quiet">
       {may(job.roles, 'money.read') ? (

@@ -1,11 +1,13 @@
 import { Button } from '@mantine/core';
 import { useInfiniteQuery, useQuery } from '@tanstack/react-query';
+import { contractSumSteps } from '@tallypole/shared/changes';
 import type { Me } from '@tallypole/shared/schemas/auth';
 import type { JobRow } from '@tallypole/shared/schemas/jobs';
 import { Link } from 'react-router-dom';
 import { writtenDate } from '../../../lib/dates.ts';
 import { useMe } from '../../../lib/me.ts';
 import { DataTable } from '../../../ui/data-table.tsx';
+import { Figure } from '../../../ui/figure.tsx';
 import { LinkButton } from '../../../ui/link-button.tsx';
 import { Money } from '../../../ui/money.tsx';
 import { EmptyState, FailureState, LoadingState, PageHead, Section } from '../../../ui/page.tsx';
@@ -19,8 +21,13 @@ const columns = [
   { key: 'firm', head: 'Builder', cell: (job: JobRow) => job.firmName },
   { key: 'place', head: 'Place', cell: (job: JobRow) => `${job.address.city}, ${job.address.state}` },
   { key: 'by', head: 'Finished by', cell: (job: JobRow) => writtenDate(job.completeBy) },
-  { key: 'sum', head: 'Contract sum today', right: true, cell: (job: JobRow) => <Money cents={job.contractSumTodayCents} /> },
+  { key: 'sum', head: 'Contract sum today', right: true, cell: (job: JobRow) => <ContractSum job={job} /> },
 ];
+
+function ContractSum({ job }: { job: JobRow }) {
+  const steps = contractSumSteps({ id: job.id, name: job.name, asSignedCents: job.contractSumCents, changesApprovedCents: job.approvedChangesCents });
+  return <Figure label={`${job.name}, contract sum today`} steps={steps}><Money cents={job.contractSumTodayCents} /></Figure>;
+}
 
 export function Component() {
   const me = useMe();

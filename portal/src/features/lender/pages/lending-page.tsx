@@ -1,7 +1,9 @@
 import { useQuery } from '@tanstack/react-query';
-import { formatMoney, sum } from '@tallypole/shared/money';
+import { fundableSteps, loanOpenSteps, type LoanOpenFigures } from '@tallypole/shared/funding';
+import { formatMoney } from '@tallypole/shared/money';
 import type { LendingRow } from '@tallypole/shared/schemas/lending';
 import { writtenDate } from '../../../lib/dates.ts';
+import { Figure } from '../../../ui/figure.tsx';
 import { LinkButton } from '../../../ui/link-button.tsx';
 import { ReviewTag } from '../../../ui/money-tags.tsx';
 import { Money } from '../../../ui/money.tsx';
@@ -31,7 +33,7 @@ function Queue({ items }: { items: LendingRow[] }) {
   return (
     <>
       <Section title={strings.today} ruled={false}>
-        <p className="quiet">{today.length === 0 ? strings.noneToday : strings.total(sum(today.map(({ loanOpenCents }) => loanOpenCents)))}</p>
+        <p className="quiet">{today.length === 0 ? strings.noneToday : <Total rows={today} />}</p>
         {today.map((row) => <Row key={row.drawId} row={row} />)}
       </Section>
       {later.length === 0 ? null : (
@@ -43,13 +45,24 @@ function Queue({ items }: { items: LendingRow[] }) {
   );
 }
 
+const asked = ({ drawId, number, jobName, loanCents, sentCents }: LendingRow): LoanOpenFigures => ({ drawId, label: `Draw ${number}, ${jobName}`, loanCents, sentCents });
+
+function Total({ rows }: { rows: readonly LendingRow[] }) {
+  const steps = fundableSteps(rows.map(asked));
+  return (
+    <>
+      <Figure label={strings.today} steps={steps}><Money cents={steps.result.kind === 'money' ? steps.result.cents : null} /></Figure> {strings.inAll}
+    </>
+  );
+}
+
 function Row({ row }: { row: LendingRow }) {
   const { jobId, drawId, number, jobName, firmName, dueOn, loanOpenCents, blocker } = row;
   return (
     <ActRow
       tag={blocker === null ? <StateTag meaning="settled">{dueOn === null ? strings.today : strings.due(writtenDate(dueOn, true))}</StateTag> : <ReviewTag state={row.reviewState} />}
       title={`Draw ${number}, ${jobName}`}
-      sum={<Money cents={loanOpenCents} />}
+      sum={<Figure label={`Draw ${number}, ${jobName}`} steps={loanOpenSteps(asked(row))}><Money cents={loanOpenCents} /></Figure>}
       action={
         <LinkButton to={`/jobs/${jobId}/draws/${drawId}`} variant={blocker === null ? 'filled' : 'outline'}>
           {blocker === null ? strings.fund(loanOpenCents) : strings.open}

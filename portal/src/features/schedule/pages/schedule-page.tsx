@@ -1,5 +1,5 @@
 import { useQuery } from '@tanstack/react-query';
-import { phasesOf, scheduleSum, type Phase } from '@tallypole/shared/schedule-of-values';
+import { lineValue, phasesOf, scheduleSum, type Phase } from '@tallypole/shared/schedule-of-values';
 import { may } from '@tallypole/shared/schemas/permissions';
 import type { ScheduleLine, ScheduleOfValues } from '@tallypole/shared/schemas/schedule-of-values';
 import { useJob } from '../../../lib/job.ts';
@@ -59,16 +59,19 @@ function PhaseTable({ phase }: { phase: Phase<ScheduleLine> }) {
         </tr>
       </thead>
       <tbody>
-        {lines.map(({ id, number, description, kind, scheduledCents }) => (
+        {lines.map((line) => {
+          const { id, number, description, kind, scheduledCents } = line;
+          return (
           <tr key={id}>
             <td className={classes['no']}>{number}</td>
             <th scope="row">
               {description}
               {kind === 'base' ? null : <span className={classes['kind']}> · {strings.kinds[kind]}</span>}
             </th>
-            <td className={classes['sum']}><Money cents={scheduledCents} /></td>
+            <td className={classes['sum']}><Figure steps={lineValue(line)} label={description}><Money cents={scheduledCents} /></Figure></td>
           </tr>
-        ))}
+          );
+        })}
       </tbody>
       <tfoot>
         <tr>
