@@ -38,7 +38,9 @@ describe('an inspector without an account, in a browser', () => {
   afterAll(() => stage.close());
 
   const at = (email: string, screen: Screen) => Someone.at(browser, house, url, email, screen);
-  const look = async (who: Someone, name: string) => {
+  /** Pictures and axe; a state of a page that is looked at elsewhere only when somebody wants pictures, since axe takes its time. */
+  const look = async (who: Someone, name: string, always = true) => {
+    if (!SHOTS && !always) return;
     if (SHOTS) {
       for (const scheme of ['light', 'dark'] as const) {
         await who.page.emulateMedia({ colorScheme: scheme, reducedMotion: 'reduce' });
@@ -57,7 +59,7 @@ describe('an inspector without an account, in a browser', () => {
     await lender.follow('Ask an inspector by link');
     await lender.press('Send the link');
     await lender.sees('Enter at least 2 characters.');
-    await look(lender, 'inspectors-error');
+    await look(lender, 'inspectors-error', false);
     await lender.fill('Name of the inspector', 'Jo Marsh');
     const guest = new GuestVisitor(house, url, 'jo@marsh-inspection.example');
     await lender.fill('Their mail address', guest.email);
@@ -82,7 +84,7 @@ describe('an inspector without an account, in a browser', () => {
     await inspector.fill('The six digits', code === '000000' ? '111111' : '000000');
     await inspector.press('Open the page');
     await inspector.sees('That code is not right.');
-    await look(inspector, 'guest-code');
+    await look(inspector, 'guest-code', false);
     await inspector.fill('The six digits', ` ${code.slice(0, 3)} ${code.slice(3)}`);
     await inspector.press('Open the page');
     await inspector.sees('9 Larkspur Court, Maple Glen, OH 45011');
@@ -99,7 +101,7 @@ describe('an inspector without an account, in a browser', () => {
     await inspector.page.getByRole('combobox', { name: 'What you saw' }).selectOption('failed');
     await inspector.press('Refuse the claim');
     await inspector.sees('Say what is missing or wrong.');
-    await look(inspector, 'guest-error');
+    await look(inspector, 'guest-error', false);
     await inspector.page.getByRole('combobox', { name: 'What you saw' }).selectOption('passed');
     await inspector.fill('Company or department', 'Marsh Inspection');
     // a quarter of an hour on site: what is recorded needs a fresh code
@@ -111,7 +113,7 @@ describe('an inspector without an account, in a browser', () => {
     await inspector.page.getByRole('dialog').getByLabel('The six digits').fill(await guest.guestCode(before));
     await inspector.press('Confirm and record');
     await inspector.sees('What you saw is recorded. Thank you.');
-    await look(inspector, 'guest-answered');
+    await look(inspector, 'guest-answered', false);
     await house.mail.wait(principal.email, /^Framing at 9 Larkspur Court is proven$/);
 
     await inspector.press('Leave this page');
@@ -120,7 +122,7 @@ describe('an inspector without an account, in a browser', () => {
     await inspector.page.reload();
     await inspector.sees('This link is no longer good');
     await inspector.sees('Look for a newer mail');
-    await look(inspector, 'guest-over');
+    await look(inspector, 'guest-over', false);
 
     await lender.goto(`/jobs/${jobId}/milestones/${framing}`);
     await lender.sees('Jo Marsh, Marsh Inspection: the lender’s inspector, by a link that the lender sent');
@@ -135,7 +137,7 @@ describe('an inspector without an account, in a browser', () => {
     await builder.signIn(`/jobs/${milestoneId.job}/inspectors?milestone=${milestoneId.framing}`);
     await builder.page.getByRole('combobox', { name: 'Whose inspector' }).selectOption('firm');
     await builder.sees('kept as a note and proves nothing');
-    await look(builder, 'inspectors-firm');
+    await look(builder, 'inspectors-firm', false);
     const input = linkInput({ milestoneIds: [milestoneId.framing], onBehalf: 'firm' });
     await principal.post(`/jobs/${milestoneId.job}/guest-links`, input);
     const guest = new GuestVisitor(house, url, input.email);
@@ -157,7 +159,7 @@ describe('an inspector without an account, in a browser', () => {
     await builder.sees('A new link is on its way; the old one is dead.');
     await builder.press(/^Take back/);
     await builder.sees('Taken back');
-    await look(builder, 'inspectors-revoked');
+    await look(builder, 'inspectors-revoked', false);
     for (const someone of [builder, inspector]) expect(someone.troubles).toEqual([]);
   });
 
