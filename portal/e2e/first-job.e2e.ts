@@ -79,7 +79,7 @@ describe('a first job, from contract to paid draw', () => {
       await hal.fill('Mail address', email);
       await hal.page.getByLabel('As', { exact: true }).selectOption(role);
       await hal.press('Send the invitation');
-      await hal.page.getByRole('cell', { name: email }).waitFor();
+      await hal.page.getByText(email, { exact: true }).waitFor();
       await house.mail.wait(email, /14 Sedge Way/);
     }
     await menu(hal, 'Oakline Builders, principal');

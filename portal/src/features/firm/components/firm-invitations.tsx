@@ -3,13 +3,12 @@ import { firmRoles } from '@tallypole/shared/schemas/roles';
 import { writtenInstant } from '../../../lib/dates.ts';
 import { queryClient } from '../../../lib/query-client.ts';
 import { ActButton } from '../../../ui/act-button.tsx';
-import { DataTable } from '../../../ui/data-table.tsx';
 import { FieldRow, Form, SelectField, TextField, useActForm, useNewId } from '../../../ui/forms/index.ts';
+import { RowList } from '../../../ui/row-list.tsx';
 import { StateTag } from '../../../ui/state-tag.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { actOnFirmInvitation, inviteMember, membersQuery } from '../api/members.ts';
 import { strings } from '../strings.ts';
-import classes from './firm.module.css';
 
 type Invitation = Members['invitations'][number];
 
@@ -17,26 +16,21 @@ const { timeZone } = Intl.DateTimeFormat().resolvedOptions();
 
 /** Who is invited into the firm and hasn't come yet. */
 export const FirmInvitations = ({ firmId, invitations, mayAct }: { firmId: string; invitations: readonly Invitation[]; mayAct: boolean }) => (
-  <DataTable
-    caption={strings.invited}
-    columns={[
-      { key: 'name', head: strings.name, cell: (open: Invitation) => open.name },
-      { key: 'role', head: strings.role, cell: (open: Invitation) => open.role },
-      { key: 'email', head: strings.address, cell: (open: Invitation) => open.email },
-      {
-        key: 'until',
-        head: strings.goodUntil,
-        cell: ({ state, expiresAt }: Invitation) => (
-          <>
-            <StateTag meaning={state === 'open' ? 'waits' : 'refused'}>{state === 'open' ? strings.open : strings.expired}</StateTag> {writtenInstant(expiresAt, timeZone)}
-          </>
-        ),
-      },
-      ...(mayAct ? [{ key: 'acts', head: strings.acts, cell: (open: Invitation) => <Acts firmId={firmId} invitation={open} /> }] : []),
-    ]}
-    rows={invitations}
-    rowKey={({ id }) => id}
+  <RowList
+    label={strings.invited}
+    rows={invitations.map((open) => ({
+      key: open.id,
+      name: open.name,
+      facts: [open.role, open.email, <Until key="until" invitation={open} />],
+      acts: mayAct ? <Acts firmId={firmId} invitation={open} /> : null,
+    }))}
   />
+);
+
+const Until = ({ invitation: { state, expiresAt } }: { invitation: Invitation }) => (
+  <>
+    <StateTag meaning={state === 'open' ? 'waits' : 'refused'}>{state === 'open' ? strings.open : strings.expired}</StateTag> {strings.goodUntil(writtenInstant(expiresAt, timeZone))}
+  </>
 );
 
 function Acts({ firmId, invitation: { id, name, expiresAt } }: { firmId: string; invitation: Invitation }) {
@@ -45,10 +39,10 @@ function Acts({ firmId, invitation: { id, name, expiresAt } }: { firmId: string;
     toast(message);
   };
   return (
-    <div className={classes['acts']}>
+    <>
       <ActButton scope={`firm-again:${id}:${expiresAt}`} label={strings.again} about={name} variant="subtle" send={(key) => actOnFirmInvitation(firmId, id, 'again', key)} onDone={done(strings.sentAgain(name))} />
       <ActButton scope={`firm-revoke:${id}:${expiresAt}`} label={strings.revoke} about={name} variant="subtle" send={(key) => actOnFirmInvitation(firmId, id, 'revoke', key)} onDone={done(strings.revoked)} />
-    </div>
+    </>
   );
 }
 

@@ -3,8 +3,8 @@ import type { PeopleWhoLeft } from '@tallypole/shared/schemas/firms';
 import { writtenInstant } from '../../../lib/dates.ts';
 import { queryClient } from '../../../lib/query-client.ts';
 import { ActButton } from '../../../ui/act-button.tsx';
-import { DataTable } from '../../../ui/data-table.tsx';
 import { FailureState, LoadingState, Section } from '../../../ui/page.tsx';
+import { RowList } from '../../../ui/row-list.tsx';
 import { StateTag } from '../../../ui/state-tag.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { erasePerson, whoLeftQuery } from '../api/settings.ts';
@@ -23,16 +23,14 @@ export function WhoLeft({ firmId }: { firmId: string }) {
       <p className="quiet" style={{ marginBottom: 12 }}>{strings.leftExplain}</p>
       {error ? <FailureState error={error} onRetry={() => void refetch()} /> : null}
       {data ? (
-        <DataTable
-          caption={strings.left}
-          columns={[
-            { key: 'name', head: strings.name, cell: (left: Left) => left.name },
-            { key: 'places', head: strings.leftPlaces, cell: (left: Left) => left.places.map(({ role, place }) => strings.place(role, place)).join('; ') },
-            { key: 'on', head: strings.leftOn, cell: (left: Left) => writtenInstant(left.endedAt, timeZone) },
-            { key: 'acts', head: strings.acts, cell: (left: Left) => <Erase firmId={firmId} left={left} /> },
-          ]}
-          rows={data.items}
-          rowKey={({ personId }) => personId}
+        <RowList
+          label={strings.left}
+          rows={data.items.map((left) => ({
+            key: left.personId,
+            name: left.name,
+            facts: [left.places.map(({ role, place }) => strings.place(role, place)).join('; '), strings.leftOn(writtenInstant(left.endedAt, timeZone))],
+            acts: <Erase firmId={firmId} left={left} />,
+          }))}
         />
       ) : (
         <LoadingState lines={2} />

@@ -8,7 +8,7 @@ import { LoadingState, PageHead, Section } from '../../../ui/page.tsx';
 import { membersQuery } from '../api/members.ts';
 import { FirmInvitations, MemberForm } from '../components/firm-invitations.tsx';
 import classes from '../components/firm.module.css';
-import { MemberTable } from '../components/member-table.tsx';
+import { MemberList } from '../components/member-list.tsx';
 import { WhoLeft } from '../components/people-who-left.tsx';
 import { strings } from '../strings.ts';
 
@@ -37,7 +37,7 @@ function Firm() {
           {may(roles, 'firm.pricing') ? <LinkButton to={`/firms/${firmId}/pricing`} variant="outline">{strings.toPricing}</LinkButton> : null}
         </div>
       </PageHead>
-      <MemberTable firmId={firmId} members={data.members} principalId={rules ? me.person.id : null} />
+      <MemberList firmId={firmId} members={data.members} principalId={rules ? me.person.id : null} />
       {data.invitations.length > 0 ? (
         <Section title={strings.invited}>
           <FirmInvitations firmId={firmId} invitations={data.invitations} mayAct={may(roles, 'firm.invite')} />

@@ -2,7 +2,7 @@ import type { JobPeople } from '@tallypole/shared/schemas/people';
 import { writtenInstant } from '../../../lib/dates.ts';
 import { queryClient } from '../../../lib/query-client.ts';
 import { ActButton } from '../../../ui/act-button.tsx';
-import { DataTable } from '../../../ui/data-table.tsx';
+import { RowList } from '../../../ui/row-list.tsx';
 import { StateTag } from '../../../ui/state-tag.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { actOnInvitation, peopleQuery } from '../api/people.ts';
@@ -19,23 +19,20 @@ interface InvitationListProps {
 
 /** Who is invited and hasn't come yet; an invitation whose time is over can be sent again. */
 export const InvitationList = ({ jobId, invitations, timeZone, mayAct }: InvitationListProps) => (
-  <DataTable
-    caption={strings.invitations}
-    columns={[
-      { key: 'name', head: strings.name, cell: (open: Invitation) => open.name },
-      { key: 'role', head: strings.role, cell: (open: Invitation) => strings.roles[open.role] },
-      { key: 'email', head: strings.address, cell: (open: Invitation) => open.email },
-      { key: 'until', head: strings.goodUntil, cell: (open: Invitation) => <Until invitation={open} timeZone={timeZone} /> },
-      ...(mayAct ? [{ key: 'acts', head: strings.acts, cell: (open: Invitation) => <Acts jobId={jobId} invitation={open} /> }] : []),
-    ]}
-    rows={invitations}
-    rowKey={(open) => open.id}
+  <RowList
+    label={strings.invitations}
+    rows={invitations.map((open) => ({
+      key: open.id,
+      name: open.name,
+      facts: [strings.roles[open.role], open.email, <Until key="until" invitation={open} timeZone={timeZone} />],
+      acts: mayAct ? <Acts jobId={jobId} invitation={open} /> : null,
+    }))}
   />
 );
 
 const Until = ({ invitation: { state, expiresAt }, timeZone }: { invitation: Invitation; timeZone: string }) => (
   <>
-    <StateTag meaning={state === 'open' ? 'waits' : 'refused'}>{state === 'open' ? strings.open : strings.expired}</StateTag> {writtenInstant(expiresAt, timeZone)}
+    <StateTag meaning={state === 'open' ? 'waits' : 'refused'}>{state === 'open' ? strings.open : strings.expired}</StateTag> {strings.goodUntil(writtenInstant(expiresAt, timeZone))}
   </>
 );
 

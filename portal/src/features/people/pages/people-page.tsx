@@ -5,9 +5,9 @@ import type { JobPeople } from '@tallypole/shared/schemas/people';
 import { useJob } from '../../../lib/job.ts';
 import { queryClient } from '../../../lib/query-client.ts';
 import { ActButton } from '../../../ui/act-button.tsx';
-import { DataTable } from '../../../ui/data-table.tsx';
 import { LinkButton } from '../../../ui/link-button.tsx';
 import { PageHead, Section } from '../../../ui/page.tsx';
+import { RowList } from '../../../ui/row-list.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { peopleQuery, removePerson } from '../api/people.ts';
 import { InvitationList } from '../components/invitation-list.tsx';
@@ -19,22 +19,19 @@ type Person = JobPeople['people'][number];
 export function Component() {
   const job = useJob();
   const { data } = useSuspenseQuery(peopleQuery(job.id));
-  const firmSees = data.people.some(({ email }) => email !== null);
   return (
     <>
       <PageHead title={strings.title}>
         <p className="quiet">{strings.explain(job.name)}</p>
       </PageHead>
-      <DataTable
-        caption={strings.people}
-        columns={[
-          { key: 'name', head: strings.name, cell: (person: Person) => person.name },
-          { key: 'role', head: strings.role, cell: (person: Person) => strings.roles[person.role] },
-          ...(firmSees ? [{ key: 'email', head: strings.address, cell: (person: Person) => person.email }] : []),
-          ...(may(job.roles, 'people.remove') ? [{ key: 'acts', head: strings.acts, cell: (person: Person) => <Remove jobId={job.id} person={person} /> }] : []),
-        ]}
-        rows={data.people}
-        rowKey={(person) => `${person.personId} ${person.role}`}
+      <RowList
+        label={strings.people}
+        rows={data.people.map((person) => ({
+          key: `${person.personId} ${person.role}`,
+          name: person.name,
+          facts: [strings.roles[person.role], ...(person.email === null ? [] : [person.email])],
+          acts: may(job.roles, 'people.remove') ? <Remove jobId={job.id} person={person} /> : null,
+        }))}
       />
       {data.invitations.length > 0 ? (
         <Section title={strings.invited}>

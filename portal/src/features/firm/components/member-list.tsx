@@ -4,7 +4,7 @@ import { firmRoles, type FirmRole } from '@tallypole/shared/schemas/roles';
 import { useState } from 'react';
 import { queryClient } from '../../../lib/query-client.ts';
 import { ActButton } from '../../../ui/act-button.tsx';
-import { DataTable } from '../../../ui/data-table.tsx';
+import { RowList } from '../../../ui/row-list.tsx';
 import { toast } from '../../../ui/toast.ts';
 import { endMember, membersQuery, setRole } from '../api/members.ts';
 import { strings } from '../strings.ts';
@@ -12,7 +12,7 @@ import classes from './firm.module.css';
 
 type Member = Members['members'][number];
 
-interface MemberTableProps {
+interface MemberListProps {
   firmId: string;
   members: readonly Member[];
   /** Who reads it, where they may change it: nobody ends their own access. */
@@ -20,17 +20,20 @@ interface MemberTableProps {
 }
 
 /** Who belongs to the firm, as what; a principal changes roles and ends access here. */
-export const MemberTable = ({ firmId, members, principalId }: MemberTableProps) => (
-  <DataTable
-    caption={strings.members}
-    columns={[
-      { key: 'name', head: strings.name, cell: (member: Member) => member.name },
-      { key: 'email', head: strings.address, cell: (member: Member) => member.email },
-      { key: 'role', head: strings.role, cell: (member: Member) => (principalId ? <RoleChoice key={member.role} firmId={firmId} member={member} /> : member.role) },
-      ...(principalId ? [{ key: 'acts', head: strings.acts, cell: (member: Member) => (member.personId === principalId ? null : <End firmId={firmId} member={member} />) }] : []),
-    ]}
-    rows={members}
-    rowKey={({ personId }) => personId}
+export const MemberList = ({ firmId, members, principalId }: MemberListProps) => (
+  <RowList
+    label={strings.members}
+    rows={members.map((member) => ({
+      key: member.personId,
+      name: member.name,
+      facts: [member.email, ...(principalId ? [] : [member.role])],
+      acts: principalId ? (
+        <>
+          <RoleChoice key={member.role} firmId={firmId} member={member} />
+          {member.personId === principalId ? null : <End firmId={firmId} member={member} />}
+        </>
+      ) : null,
+    }))}
   />
 );
 
