@@ -3,7 +3,7 @@ import hooks from 'eslint-plugin-react-hooks';
 import globals from 'globals';
 import tseslint from 'typescript-eslint';
 
-const tests = ['**/*.{spec,test}.{ts,tsx,mjs}', '**/{test,e2e,bench,testing}/**'];
+const tests = ['**/*.{spec,test}.{ts,tsx,mjs}', '**/{test,e2e,lighthouse,bench,testing}/**'];
 
 /** File names in kebab-case, with further parts behind dots: job-list.repository.ts. */
 const kebabCaseFile = {

@@ -43,6 +43,7 @@ export function suites() {
     { name: 'faults', runner: 'jest', workspace: 'api', config: 'jest.faults.config.mjs', budget: 240, needs: ['api', 'postgres'] },
     { name: 'browser', runner: 'vitest', workspace: 'portal', config: 'vitest.e2e.config.ts', budget: 360, needs: ['api', 'portal', 'postgres', 'chromium'] },
     { name: 'bench', runner: 'jest', workspace: 'api', config: 'jest.bench.config.mjs', budget: 600, needs: ['api', 'postgres'], apart: true },
+    { name: 'lighthouse', runner: 'vitest', workspace: 'portal', config: 'vitest.lighthouse.config.ts', budget: 300, needs: ['api', 'portal', 'postgres', 'chromium'], apart: true },
   ];
   return all.filter(({ name, workspace, config }) => name !== 'faults' || existsSync(path.join(root, workspace, config ?? '')));
 }

@@ -34,11 +34,11 @@ describe('queued notices', () => {
       return ((await once(sink, 'message')) as [{ taken: number }])[0].taken;
     };
     const had = await taken();
-    await house.sql(
-      `with made as (insert into notice (id, firm_id, job_id, kind, person_id, data, created_at) select gen_random_uuid(), n.firm_id, n.job_id, n.kind, n.person_id, n.data, now() from notice n, generate_series(1, $2::int) where n.id = $1 returning id, firm_id)
-       select count(graphile_worker.enqueue('send_notice', json_build_object('noticeId', id, 'firmId', firm_id), 'notice:' || id)) from made`,
+    const made = await house.sql<{ id: string; firmId: string }>(
+      `insert into notice (id, firm_id, job_id, kind, person_id, data, created_at) select gen_random_uuid(), n.firm_id, n.job_id, n.kind, n.person_id, n.data, now() from notice n, generate_series(1, $2::int) where n.id = $1 returning id, firm_id as "firmId"`,
       [model?.id, NOTICES],
     );
+    await house.as('app_worker', async (client) => (await client.query(`select count(graphile_worker.enqueue('send_notice', json_build_object('noticeId', n->>'id', 'firmId', n->>'firmId'), 'notice:' || (n->>'id'))) from json_array_elements($1::json) n`, [JSON.stringify(made)])).rows);
     const started = performance.now();
     await house.worker({ env: { SMTP_URL: `smtp://127.0.0.1:${port}` } });
     const left = async () => (await house.sql<{ n: number }>('select count(*)::int as n from notice where sent_at is null'))[0]?.n ?? 0;

@@ -53,14 +53,13 @@ function JobFrame() {
   );
 }
 
-/** How much is open, in one line. */
+/** How much is open, in one line, whose place is kept until it is known: nothing below it may jump. */
 function Waiting({ jobId }: { jobId: string }) {
   const { data } = useQuery(houseQuery(jobId));
-  if (!data) return null;
-  const mine = data.waits.filter((wait) => wait.mine).length;
+  const mine = data?.waits.filter((wait) => wait.mine).length;
   return (
-    <span className="quiet">
-      waiting for you: {mine} · waiting for others: {data.waits.length - mine}
+    <span className="quiet" aria-busy={!data}>
+      waiting for you: {mine ?? '–'} · waiting for others: {data && mine !== undefined ? data.waits.length - mine : '–'}
     </span>
   );
 }
