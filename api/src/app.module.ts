@@ -2,6 +2,7 @@ import { Module } from '@nestjs/common';
 import { APP_FILTER, APP_GUARD, APP_PIPE } from '@nestjs/core';
 import { AuthModule } from './auth/auth.module.ts';
 import { JwtGuard } from './auth/jwt.guard.ts';
+import { SecondStepGuard } from './auth/second-step.guard.ts';
 import { DatabaseModule } from './database/database.module.ts';
 import { ChangesModule } from './changes/changes.module.ts';
 import { CommonModule } from './common/common.module.ts';
@@ -39,6 +40,7 @@ import { ScheduleOfValuesModule } from './schedule-of-values/schedule-of-values.
     { provide: APP_PIPE, useFactory: validationPipe },
     { provide: APP_GUARD, useClass: RateLimitGuard },
     { provide: APP_GUARD, useClass: JwtGuard },
+    { provide: APP_GUARD, useClass: SecondStepGuard },
   ],
 })
 export class AppModule {}

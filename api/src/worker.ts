@@ -23,7 +23,7 @@ await startOrExplain(async () => {
     pollInterval: 1_000,
     noHandleSignals: true,
     // old limits and answered keys go once a day; what Stripe did without our hearing of it is asked for each minute
-    crontab: '20 3 * * * sweep_old ?fill=1d\n40 3 * * * sweep_guests ?fill=1d\n* * * * * sweep_payments',
+    crontab: '20 3 * * * sweep_old ?fill=1d\n40 3 * * * sweep_guests ?fill=1d\n50 3 * * * sweep_sign_in ?fill=1d\n* * * * * sweep_payments',
     events: sweep.events,
     taskList: tasks(app, mailer),
     logger: queueLogger(logger),

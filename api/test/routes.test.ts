@@ -17,7 +17,7 @@ interface Document {
 
 const committed = path.join(import.meta.dirname, '../openapi.json');
 /** Routes that carry no session by design. */
-const PUBLIC = ['GET /api/demo/people', 'GET /api/health', 'GET /api/health/ready', 'POST /api/auth/codes', 'POST /api/auth/refresh', 'POST /api/auth/sessions', 'POST /api/guest/visits', 'POST /api/payments/webhook'];
+const PUBLIC = ['GET /api/demo/people', 'GET /api/health', 'GET /api/health/ready', 'POST /api/auth/address/undo', 'POST /api/auth/codes', 'POST /api/auth/refresh', 'POST /api/auth/sessions', 'POST /api/auth/sessions/by-password', 'POST /api/auth/sessions/second-step', 'POST /api/guest/visits', 'POST /api/payments/webhook'];
 const REFUSED = [401, 403, 404];
 
 describe('every route', () => {

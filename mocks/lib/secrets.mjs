@@ -9,6 +9,7 @@ const random = () => randomBytes(36).toString('base64url');
 const makers = {
   JWT_SECRET: random,
   CODE_SECRET: random,
+  SECOND_FACTOR_KEYS: () => `k1:${randomBytes(32).toString('base64url')}`,
   STRIPE_SECRET_KEY: () => `sk_test_${random().replaceAll(/[-_]/g, '0')}`,
   STRIPE_WEBHOOK_SECRET: () => `whsec_${random()}`,
 };

@@ -21,6 +21,9 @@ const milliseconds = (value) => (/^\d{1,9}$/.test(value) ? undefined : 'must be 
 /** @type {Check} */
 const mail = (value) => (/^[^\s@<>]+@[^\s@<>]+$/.test(value) ? undefined : 'must be a mail address');
 
+/** @type {Check} */
+const keyRing = (value) => (/^[a-z0-9]{1,16}:[\w-]{43}(,[a-z0-9]{1,16}:[\w-]{43})*$/.test(value) ? undefined : 'must be id:key, more of them after commas; a key is 32 bytes in base64url (43 characters)');
+
 /** Everything that .env may hold for `npm start`; .env.example explains each. @type {Record<string, Check>} */
 export const variables = {
   PORT: port,
@@ -34,6 +37,8 @@ export const variables = {
   PUBLIC_URL: web,
   JWT_SECRET: secret,
   CODE_SECRET: secret,
+  SECOND_FACTOR_KEYS: keyRing,
+  REQUIRE_SECOND_FACTOR: oneOf('true', 'false'),
   STRIPE_SECRET_KEY: begins('sk_'),
   STRIPE_WEBHOOK_SECRET: begins('whsec_'),
   STRIPE_SETTLE_AFTER_MS: milliseconds,

@@ -2,6 +2,7 @@ import type { CookieOptions, Request, Response } from 'express';
 
 const ACCESS_MINUTES = 10;
 const REFRESH_DAYS = 30;
+const WAIT_MINUTES = 10;
 
 export interface SessionTokens {
   access: string;
@@ -24,9 +25,26 @@ export class SessionCookies {
     return this.secure ? '__Host-tally-refresh' : 'tally-refresh';
   }
 
+  private get waitingName(): string {
+    return this.secure ? '__Host-tally-waiting' : 'tally-waiting';
+  }
+
   set(response: Response, tokens: SessionTokens): void {
     response.cookie(this.accessName, tokens.access, this.options(ACCESS_MINUTES * 60_000));
     if (tokens.refresh) response.cookie(this.refreshName, tokens.refresh, this.options(REFRESH_DAYS * 86_400_000));
+  }
+
+  /** The first step was right; the second one is waited for, in this browser. */
+  wait(response: Response, token: string): void {
+    response.cookie(this.waitingName, token, this.options(WAIT_MINUTES * 60_000));
+  }
+
+  waitOver(response: Response): void {
+    response.clearCookie(this.waitingName, this.options());
+  }
+
+  waiting(request: Request): string | null {
+    return readCookie(request, this.waitingName);
   }
 
   clear(response: Response): void {

@@ -3,6 +3,7 @@ import { randomBytes } from 'node:crypto';
 import { readConfiguration } from './configuration.ts';
 
 const drawn = () => randomBytes(30).toString('base64url');
+const key = (id: string) => `${id}:${randomBytes(32).toString('base64url')}`;
 const production = (): Record<string, string> => ({
   NODE_ENV: 'production',
   PUBLIC_URL: 'https://tally.test',
@@ -12,6 +13,7 @@ const production = (): Record<string, string> => ({
   QUEUE_URL: 'postgres://q',
   JWT_SECRET: drawn(),
   CODE_SECRET: drawn(),
+  SECOND_FACTOR_KEYS: key('k1'),
   STRIPE_SECRET_KEY: `sk_live_${drawn()}`,
   STRIPE_WEBHOOK_SECRET: `whsec_${drawn()}`,
   SMTP_URL: 'smtps://mail.test',
@@ -33,6 +35,7 @@ describe('the configuration', () => {
     ['JWT_SECRET: must not be a demo secret in production', { JWT_SECRET: `demo-${drawn()}` }],
     ['JWT_SECRET: must not be a demo secret in production', { JWT_SECRET: 'j'.repeat(40) }],
     ['CODE_SECRET: must not be a demo secret in production', { CODE_SECRET: `changeme${drawn()}` }],
+    ['SECOND_FACTOR_KEYS (k0): must not be a demo secret in production', { SECOND_FACTOR_KEYS: `${key('k1')},k0:${'k'.repeat(43)}` }],
     ['STRIPE_SECRET_KEY: must not be a demo secret in production', { STRIPE_SECRET_KEY: 'sk_test_demo_house' }],
     ['STRIPE_WEBHOOK_SECRET: must not be a demo secret in production', { STRIPE_WEBHOOK_SECRET: 'whsec_example_1' }],
     ['S3_SECRET_ACCESS_KEY: must not be a demo secret in production', { ...bucket(), S3_SECRET_ACCESS_KEY: 'demo-secret-access-key' }],
@@ -53,6 +56,8 @@ describe('the configuration', () => {
     ['S3_BUCKET: is needed with STORAGE=s3', { ...bucket(), S3_BUCKET: '' }],
     ['S3_SECRET_ACCESS_KEY: must have at least 16 characters', { ...bucket(), S3_SECRET_ACCESS_KEY: 'short' }],
     ['JWT_SECRET: must have at least 32 characters', { JWT_SECRET: 'short' }],
+    ['SECOND_FACTOR_KEYS: must be id:key, more of them after commas; a key is 32 bytes in base64url (43 characters)', { SECOND_FACTOR_KEYS: `k1:${drawn()}` }],
+    ['SECOND_FACTOR_KEYS: must not name two keys alike', { SECOND_FACTOR_KEYS: `${key('k1')},${key('k1')}` }],
   ])('says %j, one line for each mistake', (line, wrong) => {
     expect(() => readConfiguration({ ...production(), ...wrong })).toThrow(new Error(line));
   });

@@ -3,6 +3,14 @@ import { z } from 'zod';
 const secret = z.string().min(32, 'must have at least 32 characters');
 const postgres = z.string().regex(/^postgres(ql)?:\/\//, 'must begin with postgres://');
 
+const KEY_RING = /^[a-z0-9]{1,16}:[A-Za-z0-9_-]{43}(,[a-z0-9]{1,16}:[A-Za-z0-9_-]{43})*$/;
+const keysOf = (ring: string): string[][] => ring.split(',').map((entry) => entry.split(':'));
+/** Keys that encrypt the secrets of second steps; the first one is current, the others still decrypt. */
+const keyRing = z
+  .string()
+  .regex(KEY_RING, 'must be id:key, more of them after commas; a key is 32 bytes in base64url (43 characters)')
+  .refine((ring) => new Set(keysOf(ring).map(([id]) => id)).size === keysOf(ring).length, 'must not name two keys alike');
+
 /** Where files are kept: a folder of this machine, or a bucket of an S3-compatible store. */
 const storage = z.discriminatedUnion('STORAGE', [
   z.object({ STORAGE: z.literal('disk'), FILES_DIR: z.string({ error: 'is needed with STORAGE=disk' }).min(1) }),
@@ -28,6 +36,8 @@ const running = z.object({
   DATABASE_POOL: z.coerce.number().int().min(1).max(100).default(8),
   JWT_SECRET: secret,
   CODE_SECRET: secret,
+  SECOND_FACTOR_KEYS: keyRing,
+  REQUIRE_SECOND_FACTOR: z.stringbool().optional(),
   STRIPE_SECRET_KEY: z.string().min(8),
   STRIPE_WEBHOOK_SECRET: z.string().min(8),
   STRIPE_API_URL: z.url().optional(),
@@ -72,6 +82,7 @@ function unfitForProduction(configuration: Configuration): string[] {
   if (configuration.MAIL_PAGE_URL) wrong.push('MAIL_PAGE_URL: must not be set in production: it is a page with everybody\'s mail');
   const { JWT_SECRET, CODE_SECRET, STRIPE_SECRET_KEY, STRIPE_WEBHOOK_SECRET } = configuration;
   const secrets: Record<string, string> = { JWT_SECRET, CODE_SECRET, STRIPE_SECRET_KEY, STRIPE_WEBHOOK_SECRET };
+  for (const [id = '', key = ''] of keysOf(configuration.SECOND_FACTOR_KEYS)) secrets[`SECOND_FACTOR_KEYS (${id})`] = key;
   if (configuration.STORAGE === 's3') {
     secrets['S3_SECRET_ACCESS_KEY'] = configuration.S3_SECRET_ACCESS_KEY;
     if (configuration.S3_ENDPOINT?.startsWith('http://')) wrong.push('S3_ENDPOINT: must begin with https:// in production');

@@ -6,6 +6,12 @@ import path from 'node:path';
 /** Every kind of mail; each has its folder of three templates: head (subject, preheader, heading, why), text and html. */
 const noticeKinds = [
   'sign-in-code',
+  'password-changed',
+  'second-step-changed',
+  'second-step-refused',
+  'session-reused',
+  'address-code',
+  'address-changed',
   'invitation',
   'firm-invitation',
   'invitation-accepted',

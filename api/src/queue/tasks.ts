@@ -1,7 +1,7 @@
 import { Logger, type INestApplicationContext } from '@nestjs/common';
 import type { TaskList } from 'graphile-worker';
 import { z } from 'zod';
-import { sendCode } from '../auth/send-code.repository.ts';
+import { authTasks } from '../auth/auth-tasks.ts';
 import { changeTasks } from '../changes/change-tasks.ts';
 import { CONFIGURATION, type Configuration } from '../common/configuration.ts';
 import { UnitOfWork } from '../common/unit-of-work.ts';
@@ -14,21 +14,19 @@ import { sweepOld } from '../operation/sweep-old.repository.ts';
 import { paymentTasks } from '../payments/payment-tasks.ts';
 import { photoTasks } from '../photos/photo-tasks.ts';
 
-const CodeJob = z.object({ codeId: z.uuid() });
 const NoticeJob = z.object({ noticeId: z.uuid(), firmId: z.uuid() });
 
 /** Every kind of work that the worker knows. Each may run twice and must then do nothing more. */
 export function tasks(app: INestApplicationContext, mailer: Mailer): TaskList {
   const work = app.get(UnitOfWork);
   const configuration = app.get<Configuration>(CONFIGURATION);
-  const settings = { secret: configuration.CODE_SECRET, publicUrl: configuration.PUBLIC_URL };
   return {
+    ...authTasks(app, mailer),
     ...paymentTasks(app),
     ...photoTasks(app),
     ...changeTasks(app),
     ...firmTasks(app),
     ...guestTasks(app, mailer),
-    send_code: (payload) => sendCode(work, mailer, settings, CodeJob.parse(payload).codeId),
     send_notice: (payload) => sendNotice(work, mailer, { publicUrl: configuration.PUBLIC_URL, storage: app.get<FileStorage>(FILE_STORAGE) }, NoticeJob.parse(payload)),
     sweep_old: () => sweepOld(work, new Logger('sweep')),
   };

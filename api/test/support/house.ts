@@ -51,6 +51,7 @@ export class House {
       DATABASE_POOL: process.env['TEST_POOL'] ?? '4',
       JWT_SECRET: 'j'.repeat(40),
       CODE_SECRET: 'c'.repeat(40),
+      SECOND_FACTOR_KEYS: `k1:${'k'.repeat(43)}`,
       STRIPE_SECRET_KEY: 'sk_test_demo_house',
       STRIPE_WEBHOOK_SECRET: 'whsec_demo_house',
       MAIL_FROM: 'tally@house.example',

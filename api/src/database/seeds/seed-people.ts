@@ -7,7 +7,8 @@ import { SessionCookies } from '../../auth/cookies.ts';
 import { codeHash, newCode } from '../../auth/tokens.ts';
 import { Clock } from '../../common/clock.ts';
 import { CONFIGURATION, type Configuration } from '../../common/configuration.ts';
-import { UnitOfWork } from '../../common/unit-of-work.ts';
+import { Problem } from '../../common/problem.ts';
+import { UnitOfWork, type Actor } from '../../common/unit-of-work.ts';
 import { Persona } from './persona.ts';
 
 /**
@@ -15,6 +16,8 @@ import { Persona } from './persona.ts';
  * code, so that no mail is waited for. The clocks of this process alone can be set, for a story that spans months.
  */
 export class SeedPeople {
+  private readonly signedIn: Actor[] = [];
+
   private constructor(
     private readonly web: INestApplicationContext,
     private readonly worker: INestApplicationContext,
@@ -46,12 +49,21 @@ export class SeedPeople {
     await this.web.get(UnitOfWork).write(undefined, (tx) => this.web.get(AuthRepository).askForCode(tx, id, email, now));
     const code = newCode();
     await this.connection.query('select app.set_code($1, $2, $3)', [id, codeHash(this.configuration.CODE_SECRET, email, code), now]);
-    const { me, actor, tokens } = await this.web.get(AuthService).signIn({ email, code }, 'demo');
+    const arrived = await this.web.get(AuthService).signIn({ email, code }, 'demo');
+    if (!('me' in arrived)) throw new Error(`${email} has a second step, which the seed can't give.`);
+    const { me, actor, tokens } = arrived;
+    this.signedIn.push(actor);
     if (me.person.name !== name) await this.web.get(AuthService).setName(actor, name);
     return new Persona(this.url, this.configuration.PUBLIC_URL, `${new SessionCookies(this.configuration.PUBLIC_URL).accessName}=${tokens.access}`);
   }
 
+  /** Nobody stays signed in: the demo's people shall not find sessions that they never began. */
   async close(): Promise<void> {
+    for (const actor of this.signedIn) await this.web.get(AuthService).signOut(actor).catch(unlessOver);
     await this.connection.end();
   }
+}
+
+function unlessOver(error: unknown): void {
+  if (!(error instanceof Problem) || error.code !== 'not_signed_in') throw error;
 }
