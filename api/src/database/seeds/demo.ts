@@ -23,6 +23,8 @@ export async function seedDemo(people: SeedPeople, worker: SeedWorker): Promise<
   on(-120);
   const marit = await as('marit@halvorsen-build.example');
   const firmId = await startFirm(marit, 'Halvorsen Building Co.');
+  const letterhead = { street: '8 Sawmill Road', city: 'Maple Glen', state: 'OH', zip: '45011', phone: '(513) 555-0117', license: 'OH-GC 20411' };
+  await marit.post(`firms/${firmId}/settings`, { version: 1, name: 'Halvorsen Building Co.', ...letterhead, siteSeesPrices: false });
   for (const [email, role] of [['dev@halvorsen-build.example', 'manager'], ['lupe@halvorsen-build.example', 'site'], ['wes@halvorsen-build.example', 'books']] as const) await join(marit, firmId, email, nameOf(email), role, as);
   const stage: Stage = {
     calendar, worker, firmId, on, as,
