@@ -26,7 +26,7 @@ export class AccountRepository {
 
   async setPassword(tx: Tx, hash: string, now: Date): Promise<'set' | 'changed'> {
     const row = await tx.one<{ before: boolean }>('select exists (select 1 from password where person_id = app.actor()) as before');
-    await tx.rows('insert into password (person_id, hash, set_at) values (app.actor(), $1, $2) on conflict (person_id) do update set hash = excluded.hash, set_at = excluded.set_at', [hash, now]);
+    await tx.rows('insert into password (person_id, hash, set_at) values (app.actor(), $1, $2) on conflict (person_id) do update set hash = $1, set_at = $2', [hash, now]);
     return row?.before ? 'changed' : 'set';
   }
 

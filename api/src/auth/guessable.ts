@@ -52,4 +52,4 @@ const wordsAbout = ({ name, email }: About): string[] => `${name ?? ''} ${email}
 
 const without = (text: string, words: readonly string[]): string =>
   // the longest first: "halvorsen" before "hal"
-  [...words].sort((a, b) => b.length - a.length).reduce((rest, word) => rest.replaceAll(word, ''), text).replace(/[^\p{L}\p{N}]/gu, '');
+  [...words].sort((a, b) => b.length - a.length).reduce((rest, word) => rest.replaceAll(word, ''), text).replace(/[\s\p{P}]/gu, '');
