@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from '@jest/globals';
+import { createHash } from 'node:crypto';
 import type pg from 'pg';
 import { v7 } from 'uuid';
 import { countsAsProof, inspectorsFor, senderSides, type GuestLinks, type GuestVisit, type InspectorFor } from '@tallypole/shared/schemas/guest-links';
@@ -306,6 +307,15 @@ describe('an inspector without an account', () => {
     for (const table of ['job', 'milestone', 'photo', 'file', 'inspection', 'guest_link', 'guest_inspection', 'record_entry', 'firm', 'job_member']) expect([table, await actingAs(linkId, `select 1 from ${table}`)]).toEqual([table, []]);
     for (const table of ['guest_session', 'guest_code']) await expect(actingAs(linkId, `select 1 from ${table}`)).rejects.toMatchObject({ code: '42501' });
     await expect(actingAs('', 'select app.guest_inspector_visit()')).rejects.toMatchObject({ code: 'TP002' });
+    // a visit whose code was not entered names no link, whatever the service asks for
+    const early = new GuestVisitor(house, url, guest.email);
+    await early.post('/guest/visits', { token: await guest.token() }, null);
+    const visit = createHash('sha256').update(early.cookie().split('=')[1] ?? '').digest();
+    await expect(house.as('app_read', async (client: pg.Client) => {
+      await client.query('begin');
+      expect((await client.query('select confirmed_at from app.act_as_guest($1, now())', [visit])).rows).toEqual([{ confirmed_at: null }]);
+      return (await client.query('select app.guest_inspector_visit()')).rows as pg.QueryResultRow[];
+    })).rejects.toMatchObject({ code: 'TP002' });
     await expect(actingAs(linkId, `select app.append_guest_record('{"by":"${v7()}"}')`)).rejects.toMatchObject({ code: '42501' });
     await expect(actingAs(linkId, `select app.record_guest_inspection('${v7()}', '${milestones['Finish']}', 'passed', 10000, '', '2026-01-05', true, 'x', 'y', '', 'proven', now())`)).rejects.toMatchObject({ code: '42501' });
   });
