@@ -36,9 +36,11 @@ try {
   );
   await build(house.say, watch ? ['api'] : ['api', 'portal'], house.watchOver);
   const env = environment(settings, ports, pg);
-  // the demo keeps its pictures where files are kept
+  pg.createDatabase('tally');
+  await migrate(pg, env);
+  // before the demo, which keeps its pictures where files are kept
   await startStandIns(house, { ports, env, data });
-  await prepareDatabase(pg, env, settings);
+  if (settings['DEMO'] !== 'false') await seed(pg, env);
   const start = () => {
     house.service('web server', ['--enable-source-maps', 'api/dist/web.js'], { env, mayEnd: watch });
     house.service('worker', ['--enable-source-maps', 'api/dist/worker.js'], { env, mayEnd: watch });
@@ -98,12 +100,8 @@ function environment(settings, ports, pg) {
 /**
  * @param {import('./postgres.mjs').Postgres} pg
  * @param {Record<string, string>} env
- * @param {Record<string, string>} settings
  */
-async function prepareDatabase(pg, env, settings) {
-  pg.createDatabase('tally');
-  await migrate(pg, env);
-  if (settings['DEMO'] === 'false') return;
+async function seed(pg, env) {
   house.say('looking after the demo');
   const ownerEnv = { ...env, DATABASE_OWNER_URL: pg.url('tally_owner', 'tally') };
   mustSucceed('Seeding the demo', await runNode(['api/dist/database/seed.js'], { env: ownerEnv, onStart: house.watchOver }));

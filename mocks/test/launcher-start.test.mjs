@@ -77,7 +77,7 @@ const people = async () => /** @type {any} */ (await (await fetch(`http://127.0.
 
 beforeAll(async () => {
   await copyCheckout(folder);
-  for (const name of ['PORT', 'STRIPE_PORT', 'MAIL_PAGE_PORT', 'SMTP_PORT']) ports[name] = await freePort();
+  for (const name of ['PORT', 'STRIPE_PORT', 'MAIL_PAGE_PORT', 'SMTP_PORT', 'STORAGE_PORT']) ports[name] = await freePort();
 }, 180_000);
 
 afterAll(async () => {
@@ -113,7 +113,8 @@ describe('before anything is started', () => {
 });
 
 describe('a whole start', () => {
-  test('comes up, refuses a second one and a reset, keeps its data over a restart, leaves nothing behind', async () => {
+  test('comes up, refuses a second one and a reset, is backed up and brought back, keeps its data over a restart, leaves nothing behind', async () => {
+    writeFileSync(path.join(folder, '.env'), 'STORAGE=s3\n');
     const first = await start();
     expect((await fetch(`http://127.0.0.1:${ports['PORT']}/api/health`)).status).toBe(200);
     expect((await fetch(`http://127.0.0.1:${ports['PORT']}/`)).headers.get('content-type')).toMatch(/text\/html/);
@@ -123,6 +124,13 @@ describe('a whole start', () => {
     expect(second).toEqual({ code: 1, text: expect.stringContaining(`already runs from this folder as process ${first.child.pid}`) });
     expect(await run('mocks/reset.mjs', '--yes').ended).toEqual({ code: 1, text: expect.stringContaining('already runs') });
 
+    const { objects } = /** @type {any} */ (await (await fetch(`http://127.0.0.1:${ports['STORAGE_PORT']}/_control`)).json());
+    expect(objects.length).toBeGreaterThan(10);
+    // the folder is meant from where the command is given
+    const backedUp = new RegExp(`^Backed up to .*/kept/monday: the database as of .* and ${objects.length} files\\.$`, 'm');
+    expect(await run('mocks/keep.mjs', 'backup', '--to', 'kept/monday').ended).toEqual({ code: 0, text: expect.stringMatching(backedUp) });
+    expect(await run('mocks/keep.mjs', 'restore', '--from', 'kept/monday', '--over').ended).toEqual({ code: 1, text: expect.stringContaining('Stop them first.') });
+
     let before = await mails();
     for (let i = 0; before.length === 0 && i < 100; i += 1) {
       await pause(100);
@@ -131,12 +139,17 @@ describe('a whole start', () => {
     first.child.kill('SIGTERM');
     expect((await first.ended).code).toBe(0);
     expect(await nothingLeft()).toBe(true);
+    const restored = await run('mocks/keep.mjs', 'restore', '--from', 'kept/monday', '--over').ended;
+    expect(restored).toEqual({ code: 0, text: expect.stringContaining(`with ${objects.length} files.`) });
+    expect(restored.text).not.toContain('BROKEN');
+    expect(await nothingLeft()).toBe(true);
 
     const again = await start();
     expect(await mails()).toEqual(expect.arrayContaining(before));
     again.child.kill('SIGINT');
     expect((await again.ended).code).toBe(0);
-  }, 120_000);
+    rmSync(path.join(folder, '.env'));
+  }, 240_000);
 
   test('kill -9 of the launcher takes everything along', async () => {
     const launcher = await start();
