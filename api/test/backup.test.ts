@@ -54,6 +54,11 @@ describe('a backup', () => {
     expect([statSync(folder('good')).mode & 0o077, open]).toEqual([0, []]);
   });
 
+  it('knows every column that points at a stored file', async () => {
+    const columns = await house.sql<{ at: string }>(`select table_name || '.' || column_name as at from information_schema.columns where table_schema = 'public' and column_name ~ '(storage|file|object)_key$' order by 1`);
+    expect(columns.map(({ at }) => at)).toEqual(['document.storage_key', 'file.storage_key']);
+  });
+
   it('is checked as whole, and fills a fresh database and an empty store with the same', async () => {
     const check = await operate(house, 'check');
     expect([check.status, check.output.includes('BROKEN')]).toEqual([0, false]);
