@@ -3,6 +3,8 @@ import type { RouteObject } from 'react-router-dom';
 /** Pages of the features, each loaded when it is opened. `job` paths stand below /jobs/:jobId, `wide` ones at the top. */
 export const featureRoutes: { job: RouteObject[]; wide: RouteObject[] } = {
   wide: [
+    { path: 'account', lazy: () => import('../features/account/pages/account-page.tsx') },
+    { path: 'account/second-step', lazy: () => import('../features/account/pages/second-step-page.tsx') },
     { path: 'firms/:firmId', lazy: () => import('../features/firm/pages/firm-page.tsx') },
     { path: 'firms/:firmId/settings', lazy: () => import('../features/firm/pages/firm-settings-page.tsx') },
     { path: 'firms/:firmId/pricing', lazy: () => import('../features/changes/pages/firm-pricing-page.tsx') },

@@ -60,6 +60,7 @@ function Places({ me, onGo }: { me: Me; onGo: () => void }) {
     <ul>
       {me.firms.map(({ id, name, role }) => go(`/firms/${id}`, `${name}, ${role}`))}
       {me.firms.filter(({ role }) => may([role], 'firm.pricing')).map(({ id, name }) => go(`/firms/${id}/pricing`, me.firms.length > 1 ? `${name}: how changes are priced` : 'How changes are priced'))}
+      {go('/account', 'Your account')}
       {go('/jobs', 'Your jobs')}
       {me.jobs.slice(0, MOST_JOBS).map(({ id, name }) => go(`/jobs/${id}`, name, true))}
       {me.jobs.some(({ roles }) => roles.includes('lender')) ? go('/lending', 'Draws to fund') : null}

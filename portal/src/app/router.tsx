@@ -11,6 +11,7 @@ const Nothing = () => null;
 /** Sign-in and what a mailed link opens stand alone; everything else needs a person; a job's pages stand beside its pole. */
 export const router = createBrowserRouter([
   { path: '/sign-in', HydrateFallback: Nothing, lazy: () => import('../features/auth/pages/sign-in-page.tsx'), errorElement: <ErrorPage /> },
+  { path: '/address-undo', HydrateFallback: Nothing, lazy: () => import('../features/account/pages/address-undo-page.tsx'), errorElement: <ErrorPage /> },
   { path: '/guest', HydrateFallback: Nothing, lazy: () => import('../features/guest/pages/guest-page.tsx'), errorElement: <ErrorPage /> },
   {
     path: '/',

@@ -2,6 +2,7 @@ import { Button, Skeleton } from '@mantine/core';
 import { useEffect, useRef, type ReactNode } from 'react';
 import { Problem } from '../lib/problem.ts';
 import { useTitle } from '../lib/use-title.ts';
+import { SecondStepLink } from './second-step-link.tsx';
 import classes from './page.module.css';
 
 /** The page's heading, which is also its title; takes focus when the page opens, so that a screen reader begins there. */
@@ -41,6 +42,7 @@ export function FailureState({ error, onRetry }: { error: unknown; onRetry?: () 
   return (
     <div className={classes['failure']} role="alert">
       <p>{problem?.message ?? 'Sorry, something went wrong on our side. Nothing was changed.'}</p>
+      <SecondStepLink error={problem} />
       {problem?.requestId ? <p className="quiet">Reference {problem.requestId}</p> : null}
       {onRetry ? (
         <Button variant="outline" onClick={onRetry}>

@@ -1,5 +1,6 @@
 import { Button } from '@mantine/core';
 import { useEffect, useRef, type ReactNode } from 'react';
+import { SecondStepLink } from '../second-step-link.tsx';
 import classes from './form.module.css';
 import { fieldId, type ActForm } from './use-act-form.ts';
 
@@ -48,6 +49,7 @@ function ErrorSummary<Values extends object>({ act }: { act: ActForm<Values> }) 
     <div className={classes['summary']} ref={box} tabIndex={-1} role="alert">
       <h2>There is a problem</h2>
       {act.failure && errors.length === 0 ? <p>{act.failure.message}</p> : null}
+      <SecondStepLink error={act.failure} />
       {act.failure?.code === 'outdated' ? (
         <Button variant="outline" onClick={() => window.location.reload()}>
           Load the page again

@@ -1,29 +1,29 @@
-import type { CodeSent } from '@tallypole/shared/schemas/auth';
+import type { PresenceAsked } from '@tallypole/shared/schemas/auth';
 import { lazy, Suspense, useRef, useState, type ReactNode } from 'react';
 import { post } from '../../lib/http.ts';
 import { isProblemWith, Problem } from '../../lib/problem.ts';
 
 export interface Presence {
-  /** Performs an act; where the server asks who is there, a mailed code is asked for and the act is sent again. */
+  /** Performs an act; where the server asks who is there, a code is asked for and the act is sent again. */
   guard: <T>(act: () => Promise<T>) => Promise<T>;
   /** Stands somewhere on the page. */
   dialog: ReactNode;
 }
 
 interface Asked {
-  sentTo: string;
+  by: PresenceAsked;
   settle: (present: boolean) => void;
 }
 
 const PresenceDialog = lazy(() => import('./presence-dialog.tsx'));
 
-/** Proof of presence around signing, approving and paying: a code at the person's own address, asked for only when it is needed. */
+/** Proof of presence around signing, approving and paying: a code at the person's own address, or of their authenticator, asked for only when it is needed. */
 export function usePresence(): Presence {
   const [asked, setAsked] = useState<Asked | null>(null);
   const open = useRef(false);
   const prove = async (): Promise<boolean> => {
-    const { sentTo } = await post<CodeSent>('auth/presence/codes', {});
-    return await new Promise<boolean>((settle) => setAsked({ sentTo, settle }));
+    const by = await post<PresenceAsked>('auth/presence/codes', {});
+    return await new Promise<boolean>((settle) => setAsked({ by, settle }));
   };
   const guard = async <T,>(act: () => Promise<T>): Promise<T> => {
     try {
@@ -41,7 +41,7 @@ export function usePresence(): Presence {
   };
   const dialog = asked ? (
     <Suspense fallback={null}>
-      <PresenceDialog sentTo={asked.sentTo} onSettled={asked.settle} />
+      <PresenceDialog by={asked.by} onSettled={asked.settle} />
     </Suspense>
   ) : null;
   return { guard, dialog };

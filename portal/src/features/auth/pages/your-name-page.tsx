@@ -4,7 +4,7 @@ import { enter } from '../../../lib/me.ts';
 import { Form, TextField, useActForm } from '../../../ui/forms/index.ts';
 import { PageHead } from '../../../ui/page.tsx';
 import { setName } from '../api/sign-in.ts';
-import { safePath } from '../safe-path.ts';
+import { safePath } from '../../../lib/safe-path.ts';
 import { strings } from '../strings.ts';
 
 /** Whoever comes for the first time says how others know them. */
