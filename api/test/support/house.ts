@@ -77,7 +77,7 @@ export class House {
     await until(async () => {
       if (child.exitCode !== null) throw new Error(`The web process ended with ${child.exitCode}.`);
       return await fetch(`${url}/api/health${options.alive ? '' : '/ready'}`).then((answer) => answer.ok, () => false);
-    }, 'the web process');
+    }, 'the web process', 50_000);
     return { url, child };
   }
 
