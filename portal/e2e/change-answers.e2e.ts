@@ -125,7 +125,7 @@ describe('what people answer to a change', () => {
     const letter = path.join(house.env['FILES_DIR'] ?? '', '../letter.pdf');
     writeFileSync(letter, pdf());
     await ada.page.locator('input[type=file]').setInputFiles(letter);
-    await ada.sees('100 % sent');
+    await ada.sees('The file has arrived.');
     await ada.fill('Who reviewed it', 'Ada Finch, AIA');
     await ada.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
     // the pointer rests nowhere, so that no band of the pole stands open

@@ -61,7 +61,7 @@ describe('a change, from its price to the last signature', () => {
     const sheetFile = path.join(house.env['FILES_DIR'] ?? '', '../joist-sheet.pdf');
     writeFileSync(sheetFile, pdf());
     await builder.page.locator('input[type=file]').setInputFiles(sheetFile);
-    await builder.sees('100 % sent');
+    await builder.sees('The file has arrived.');
     await builder.fill('Who reviewed it', 'P. Wren, PE');
     await builder.page.getByLabel('License').fill('OH 55512');
     await builder.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');

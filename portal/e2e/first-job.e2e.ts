@@ -338,7 +338,7 @@ describe('a first job, from contract to paid draw', () => {
     const sheet = path.join(house.env['FILES_DIR'] ?? '', '../joists.pdf');
     writeFileSync(sheet, pdf());
     await who.page.locator('input[type=file]').setInputFiles(sheet);
-    await who.sees('100 % sent');
+    await who.sees('The file has arrived.');
     await who.fill('Who reviewed it', 'P. Wren, PE');
     await who.page.getByLabel('Reviewed on', { exact: true }).fill('11/20/2026');
     await who.press('Attach the review');
