@@ -1,4 +1,5 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from '@jest/globals';
+import type { ChildProcess } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import type pg from 'pg';
 import { v7 } from 'uuid';
@@ -28,12 +29,13 @@ describe('an inspector without an account', () => {
   let firmId: string;
   let homeowner: Visitor;
   let lender: Visitor;
+  let worker: ChildProcess;
   let jobId: string;
   let milestones: Record<string, string>;
 
   beforeAll(async () => {
     house = await House.open();
-    await house.worker();
+    worker = await house.worker();
     ({ url } = await house.web());
     ({ principal, firmId } = await principalWithFirm(house, url));
   });
@@ -248,9 +250,12 @@ describe('an inspector without an account', () => {
     const old = await guest.token();
     await guest.enter(old);
     await inspect(guest, seen('failed', 2, { note: 'The hold-downs are loose.' }));
+    // at once, not only when the worker has made the new one
+    await house.kill(worker, 'SIGTERM');
     const again = await lender.post(at(`/${linkId}/again`));
     expect([again.status, (again.body as GuestLinks).items[0]]).toEqual([201, expect.objectContaining({ state: 'on_its_way', milestones: [expect.objectContaining({ answeredAt: null })] })]);
     expect((await guest.post('/guest/visits', { token: old }, null)).status).toBe(410);
+    worker = await house.worker();
     await claim(3);
     await guest.enter(await guest.token(1));
     expect((await inspect(guest, seen('passed', 4))).status).toBe(201);
